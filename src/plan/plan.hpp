@@ -167,6 +167,7 @@ struct Link {
   std::string travel_time_origin;  // measured | progression_speed | speed_limit | class_default
   std::optional<double> travel_time_sd_s;
   std::optional<double> storage_veh;
+  std::optional<double> saturation_flow_vph;  // of the lanes the link's arrivals use at to_group; absent: the group's
   double uniform_flow_vph = 0;  // arrivals that belong to no platoon (driveways, unsignalled streets)
   std::vector<LinkFeed> feeds;
 };

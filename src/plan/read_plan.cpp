@@ -204,6 +204,7 @@ void read_link(JsonContext& context, const Json& value, const std::string& path,
   o.optional("travel_time_origin", link.travel_time_origin);
   o.optional("travel_time_sd_s", link.travel_time_sd_s);
   o.optional("storage_veh", link.storage_veh);
+  o.optional("saturation_flow_vph", link.saturation_flow_vph);
   o.optional("uniform_flow_vph", link.uniform_flow_vph);
   o.list("feeds", false, [&](const Json& inner, const std::string& inner_path) {
     LinkFeed& feed = link.feeds.emplace_back();

@@ -166,6 +166,7 @@ Json json_of(const Link& link) {
             {"travel_time_origin", link.travel_time_origin}};
   put(json, "travel_time_sd_s", link.travel_time_sd_s);
   put(json, "storage_veh", link.storage_veh);
+  put(json, "saturation_flow_vph", link.saturation_flow_vph);
   if (link.uniform_flow_vph != 0) json["uniform_flow_vph"] = number(link.uniform_flow_vph);
   json["feeds"] = Json::array();
   for (const LinkFeed& feed : link.feeds) json["feeds"].push_back({{"from_group", feed.from_group}, {"flow_vph", number(feed.flow_vph)}});
