@@ -20,4 +20,8 @@ QueueFigures periodic_queue(const Profile& arrivals, const Profile& capacity);
 // The same with the arrivals `shift` steps earlier: arrival of step k is arrivals[(k + shift) mod n].
 QueueFigures periodic_queue(const Profile& arrivals, const Profile& capacity, std::size_t shift);
 
+// All shifts 0 .. n-1 at once, the same figures. One red and no arrival above the full step's capacity: the red is summed from
+// prefix sums and only the clearing of the queue is played, O(n + steps to clear) a shift; otherwise every shift is played whole.
+std::vector<QueueFigures> periodic_queues(const Profile& arrivals, const Profile& capacity);
+
 }  // namespace entrain::traffic

@@ -51,3 +51,24 @@ TEST_CASE("no capacity and too much flow give finite figures and say so") {
   CHECK(over.oversaturated);
   CHECK(std::isfinite(over.delay_veh_s));
 }
+
+TEST_CASE("all shifts at once equal each shift played whole") {
+  CHECK(rc::check([] {
+    const int n = *rc::gen::inRange(4, 60);
+    Profile arrivals{1, {}};
+    for (int k = 0; k < n; ++k) arrivals.vehicles.push_back(*rc::gen::inRange(0, 100) / 400.0);
+    const double start = *rc::gen::inRange(0, 10 * n) / 10.0, length = *rc::gen::inRange(0, 10 * n + 1) / 10.0;
+    std::vector<GreenTime> greens = {{start, length}};
+    if (*rc::gen::inRange(0, 4) == 0) greens.push_back({start + n / 2.0, n / 8.0});
+    const Profile capacity = capacity_profile(greens, n, 0, 0, *rc::gen::inRange(1, 10) / 10.0, 1);
+    const auto all = periodic_queues(arrivals, capacity);
+    for (int d = 0; d < n; ++d) {
+      const QueueFigures one = periodic_queue(arrivals, capacity, static_cast<std::size_t>(d));
+      const QueueFigures& other = all[static_cast<std::size_t>(d)];
+      RC_ASSERT(std::fabs(one.delay_veh_s - other.delay_veh_s) < 1e-7 * (1 + one.delay_veh_s));
+      RC_ASSERT(std::fabs(one.stops_veh - other.stops_veh) < 1e-7 * (1 + one.stops_veh));
+      RC_ASSERT(std::fabs(one.longest_veh - other.longest_veh) < 1e-7 * (1 + one.longest_veh));
+      RC_ASSERT(one.oversaturated == other.oversaturated);
+    }
+  }));
+}

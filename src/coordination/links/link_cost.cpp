@@ -19,8 +19,9 @@ std::int64_t whole_cost(const traffic::QueueFigures& figures, const LinkInput& l
 std::vector<std::int64_t> cost_table(const LinkInput& link, int cycle_s, const CostModel& model) {
   const traffic::Profile arrivals = traffic::link_arrivals(link.feeds, link.uniform_flow_vph, link.spread, cycle_s);
   const traffic::Profile capacity = traffic::capacity_of(link.downstream, cycle_s, link.spread.step_s);
-  std::vector<std::int64_t> table(static_cast<std::size_t>(cycle_s));
-  for (std::size_t d = 0; d < table.size(); ++d) table[d] = whole_cost(traffic::periodic_queue(arrivals, capacity, d), link, cycle_s, model);
+  std::vector<std::int64_t> table;
+  table.reserve(static_cast<std::size_t>(cycle_s));
+  for (const traffic::QueueFigures& figures : traffic::periodic_queues(arrivals, capacity)) table.push_back(whole_cost(figures, link, cycle_s, model));
   return table;
 }
 
