@@ -21,6 +21,7 @@ struct Allocation {
   std::vector<GroupGreen> groups;              // in the order of SignalDesign::groups
   std::vector<double> saturation_descending;   // the fairness vector
   bool oversaturated = false;
+  bool proved = true;  // false: the exact search over orders met its limit, a better order may exist (general signal groups only)
 };
 
 struct AllocationRequest {
@@ -31,7 +32,10 @@ struct AllocationRequest {
   std::vector<Tenths> fixed_splits;  // by group, where not empty
 };
 
-// All orders that are kept, best first, ties by order name; never one that would trap an opposed turn.
+// All orders that are kept, best first (ties: fewer lagging turns, then order name); never one that would trap an opposed turn.
+// Degrees of saturation are max-min fair in whole-second splits: the vector sorted descending is lexicographically least, exactly.
+// Where several splits give the same vector: barriers nearest to the sides' needs in proportion, then the earlier group of the ring.
+// Green that no flow asks for goes to the group with an even phase number (ring-and-barrier), or to each group in order (general).
 // Errors: cycle too short (names the critical groups, their needs, and the cycle that would do), contradictory requests.
 [[nodiscard]] Result<std::vector<Allocation>> allocate(const SignalDesign& design, const AllocationRequest& request);
 

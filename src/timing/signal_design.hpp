@@ -61,8 +61,15 @@ struct Conflict {
   Tenths intergreen_ab, intergreen_ba;
 };
 
+// Rings have as many sides as each other; a side may be empty in one ring (three legs): that ring rests until the barrier.
 struct RingBarrier {
-  std::vector<std::vector<std::vector<int>>> rings;  // [ring][side of the barrier][groups in sequence]; both rings have as many sides
+  std::vector<std::vector<std::vector<int>>> rings;  // [ring][side of the barrier][groups in sequence]
+};
+
+// A turn that yields to a movement from the opposite approach, for the opposed-turn trap.
+struct OpposedPair {
+  std::string turn, opposing;  // movement ids
+  bool operator==(const OpposedPair&) const = default;
 };
 
 struct SignalDesign {
@@ -73,6 +80,7 @@ struct SignalDesign {
   std::vector<Conflict> conflicts;        // complete: every conflicting pair; pairs that do not stand here may share green
   std::optional<RingBarrier> ring_barrier;  // absent: general signal groups
   int reference_group = 0;                // coordinated group by default
+  std::vector<OpposedPair> opposed;       // every opposed turn with the movements it must yield to where it is permissive
   std::vector<std::string> assumptions;   // loud ones, for sheets
 };
 

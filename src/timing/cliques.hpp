@@ -1,0 +1,28 @@
+// Sets of groups that all conflict with each other, and the cheapest order in which such a set can follow one another round the cycle.
+#pragma once
+
+#include <vector>
+
+#include "timing/signal_design.hpp"
+
+namespace entrain::timing {
+
+// Maximal cliques of the conflict graph over the given groups, each ascending, in lexicographic order (at most 4096 of them).
+std::vector<std::vector<int>> maximal_cliques(const SignalDesign& design, const std::vector<int>& groups);
+
+// Least sum of change[a][b] over the cyclic orders of the clique (a followed by b); positions index `clique`. Exact for up to 12 members
+// (dynamic programming over subsets, Held and Karp 1962), the given order beyond. One member: 0 and itself.
+struct CyclicOrder {
+  double sum = 0;
+  std::vector<int> order;  // members in sequence
+};
+CyclicOrder cheapest_cyclic_order(const std::vector<int>& clique, const std::vector<std::vector<double>>& change);
+
+// Lost time of a clique of vehicle groups: cheapest cyclic sum of intergreen + start-up lost - end gain, seconds.
+CyclicOrder clique_lost_time(const SignalDesign& design, const std::vector<int>& clique);
+
+// L X / (X - Y): the cycle at which a critical flow ratio Y and lost time L meet the degree of saturation X; infinity if Y >= X. X = 1 gives
+// the least cycle L / (1 - Y) of Webster (1958).
+double cycle_for_saturation_s(double lost_time_s, double flow_ratio, double degree_of_saturation);
+
+}  // namespace entrain::timing
