@@ -148,9 +148,10 @@ std::string level_of_service(double control_delay_s) {
   return "F";
 }
 
-Evaluation evaluate(const plan::Plan& plan) {
+Evaluation evaluate(const plan::Plan& plan, Platoons platoons) {
   Evaluation evaluation;
-  const StreamTable streams(plan);
+  StreamTable streams(plan);
+  if (platoons == Platoons::through_network) streams.couple();
   for (const plan::Signal& signal : plan.signals) {
     if (!is_usable_cycle(signal.cycle_s)) {
       evaluation.remarks.push_back(fmt::format("{}: cycle {} s can't be evaluated", signal.id, number_text(signal.cycle_s)));

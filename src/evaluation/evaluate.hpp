@@ -41,8 +41,13 @@ struct Evaluation {
   std::vector<std::string> remarks;           // queue beyond storage, oversaturated, cycle that does not divide the day, ...
 };
 
+// How platoons are shaped. `by_link`: each link's feeds arrive evenly at their own upstream greens (the cost model of the offset
+// problem). `through_network`: arrivals shape departures shape arrivals, round after round, over all links (a periodic flow model;
+// on loops the rounds are cut at a fixed number).
+enum class Platoons { by_link, through_network };
+
 // Never fails: what a plan does not state is left out and remarked.
-Evaluation evaluate(const plan::Plan& plan);
+Evaluation evaluate(const plan::Plan& plan, Platoons platoons = Platoons::by_link);
 
 // HCM 2000 level of service by control delay, seconds a vehicle.
 std::string level_of_service(double control_delay_s);

@@ -83,11 +83,36 @@ traffic::Stream StreamTable::stream_of(const plan::Signal& signal, const plan::G
 traffic::Profile StreamTable::arrivals_of(const plan::Link& link, const plan::Signal& from, const plan::Signal& to) const {
   std::vector<traffic::Feed> feeds;
   for (const plan::LinkFeed& feed : link.feeds)
-    if (const plan::Group* group = find_group(from, feed.from_group)) feeds.push_back({stream_of(from, *group), feed.flow_vph});
+    if (const plan::Group* group = find_group(from, feed.from_group)) feeds.push_back({stream_of(from, *group), feed.flow_vph, m_coupled ? inflow_of(from.id, group->id) : std::nullopt});
   const plan::CostModel& model = m_plan.cost_model;
   const traffic::Spread spread{link.travel_time_s, link.travel_time_sd_s, model.alpha, model.beta, 1};
   const traffic::Profile upstream = traffic::link_arrivals(feeds, link.uniform_flow_vph, spread, cycle_s(from));
   return traffic::shifted(upstream, from.offset_s - to.offset_s);
+}
+
+std::optional<traffic::Profile> StreamTable::inflow_of(const std::string& signal, const std::string& group) const {
+  const auto found = m_links.find({signal, group});
+  if (found == m_links.end()) return std::nullopt;
+  traffic::Profile sum = found->second.front().arrivals;
+  for (std::size_t i = 1; i < found->second.size(); ++i) traffic::add_to(sum, found->second[i].arrivals);
+  return sum;
+}
+
+void StreamTable::couple() {
+  m_coupled = true;
+  constexpr int most_rounds = 40;
+  for (int round = 0; round < most_rounds; ++round) {
+    auto next = m_links;
+    double change = 0;
+    for (auto& [end, arriving] : next)
+      for (LinkArrivals& one : arriving) {
+        const traffic::Profile before = one.arrivals;
+        one.arrivals = arrivals_of(*one.link, *find(one.link->from_signal), *find(one.link->to_signal));
+        for (std::size_t k = 0; k < before.vehicles.size(); ++k) change = std::max(change, std::fabs(before.vehicles[k] - one.arrivals.vehicles[k]));
+      }
+    m_links = std::move(next);
+    if (change < 1e-9) return;
+  }
 }
 
 LaneGroupStream StreamTable::of(const plan::Signal& signal, const plan::LaneGroup& lane_group) const {

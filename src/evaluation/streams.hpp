@@ -2,6 +2,7 @@
 #pragma once
 
 #include <map>
+#include <optional>
 #include <string>
 #include <vector>
 
@@ -23,6 +24,8 @@ bool is_usable_cycle(double cycle_s);
 class StreamTable {
  public:
   explicit StreamTable(const plan::Plan& plan);
+  // Lets the arrivals at every group shape what departs into the links, until that settles or the rounds are used up.
+  void couple();
   LaneGroupStream of(const plan::Signal& signal, const plan::LaneGroup& lane_group) const;
   // The cycle in which the signal is evaluated: the plan's where the signal runs at it or at its half, else its own.
   double cycle_s(const plan::Signal& signal) const;
@@ -35,9 +38,11 @@ class StreamTable {
   const plan::Signal* find(const std::string& id) const;
   traffic::Stream stream_of(const plan::Signal& signal, const plan::Group& group) const;
   traffic::Profile arrivals_of(const plan::Link& link, const plan::Signal& from, const plan::Signal& to) const;
+  std::optional<traffic::Profile> inflow_of(const std::string& signal, const std::string& group) const;
 
   const plan::Plan& m_plan;
   std::map<std::string, const plan::Signal*> m_signals;
+  bool m_coupled = false;
   std::map<std::pair<std::string, std::string>, std::vector<LinkArrivals>> m_links;  // (signal, group) -> links that end there
 };
 

@@ -5,13 +5,18 @@
 namespace entrain::traffic {
 namespace {
 
+Profile inflow_of(const Feed& feed, double cycle_s, double step_s) {
+  const double vehicles = feed.stream.flow_vph / seconds_per_hour * cycle_s;
+  if (feed.inflow && feed.inflow->total() > 0) return scaled(*feed.inflow, vehicles / feed.inflow->total());
+  return uniform_profile(feed.stream.flow_vph / seconds_per_hour, cycle_s, step_s);
+}
+
 Profile departures_of(const Feed& feed, double cycle_s, double step_s) {
   const Stream& stream = feed.stream;
   const double flow_vps = feed.flow_vph / seconds_per_hour;
   const Profile capacity = capacity_of(stream, cycle_s, step_s);
   if (capacity.total() <= 0) return uniform_profile(flow_vps, cycle_s, step_s);
-  const Profile shape =
-      stream.flow_vph > 0 ? departures(uniform_profile(stream.flow_vph / seconds_per_hour, cycle_s, step_s), capacity) : capacity;
+  const Profile shape = stream.flow_vph > 0 ? departures(inflow_of(feed, cycle_s, step_s), capacity) : capacity;
   return scaled(shape, flow_vps * cycle_s / shape.total());
 }
 

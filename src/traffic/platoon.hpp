@@ -18,7 +18,8 @@ struct Stream {
 
 struct Feed {
   Stream stream;
-  double flow_vph = 0;  // the part of the stream that enters the link
+  double flow_vph = 0;            // the part of the stream that enters the link
+  std::optional<Profile> inflow;  // shape of what arrives behind the stream's greens, local time; absent: even
 };
 
 struct Spread {
@@ -29,7 +30,7 @@ struct Spread {
 };
 
 // Vehicles a step that arrive at the downstream stop line, in the upstream signal's local time, sum of all feeds and the even
-// `uniform_flow_vph`. A feed departs as an even inflow of its stream's flow behind its greens would; a stream without flow departs
+// `uniform_flow_vph`. A feed departs as an inflow (even, or of its own shape) of its stream's flow behind its greens would; a stream without flow departs
 // as its effective green alone; one without green departs evenly.
 Profile link_arrivals(const std::vector<Feed>& feeds, double uniform_flow_vph, const Spread& spread, double cycle_s);
 

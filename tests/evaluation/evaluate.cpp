@@ -113,3 +113,32 @@ TEST_CASE("a plan without flows, groups or a usable cycle is evaluated as far as
   CHECK_FALSE(result.remarks.empty());
   CHECK(evaluation::evaluate(Plan{}).lane_groups.empty());
 }
+
+TEST_CASE("through the network, a platoon keeps its shape past a signal it meets on green") {
+  // Three signals in a row; the middle one is green whenever the platoon of the first comes through it.
+  Plan plan = two_signals(18);
+  plan.signals.push_back(two_phase("C", 10 + 36, 600));
+  Link link = plan.links[0];
+  link.id = "B>C";
+  link.from_signal = "B";
+  link.to_signal = "C";
+  plan.links.push_back(link);
+  const auto by_link = evaluation::evaluate(plan), coupled = evaluation::evaluate(plan, evaluation::Platoons::through_network);
+  // The first link has an even inflow in both models.
+  CHECK(coupled.lane_groups.at(2).uniform_delay_s == Approx(by_link.lane_groups.at(2).uniform_delay_s));
+  // Behind B the coupled platoon is spread over two links and not formed anew: it can't be sharper.
+  CHECK(coupled.lane_groups.at(4).uniform_delay_s != Approx(by_link.lane_groups.at(4).uniform_delay_s).epsilon(1e-4));
+  CHECK(coupled.total.delay_veh_h_per_h < 1.5 * by_link.total.delay_veh_h_per_h);
+}
+
+TEST_CASE("on a loop of always green signals the rounds end with an even flow") {
+  Plan plan = two_signals(0);
+  for (Signal& signal : plan.signals) signal.groups[0].greens = {{0, 60}};
+  Link back = plan.links[0];
+  back.id = "B>A";
+  std::swap(back.from_signal, back.to_signal);
+  plan.links.push_back(back);
+  const auto coupled = evaluation::evaluate(plan, evaluation::Platoons::through_network);
+  CHECK(coupled.lane_groups.at(0).uniform_delay_s == Approx(0).margin(1e-9));
+  CHECK(coupled.lane_groups.at(2).uniform_delay_s == Approx(0).margin(1e-9));
+}

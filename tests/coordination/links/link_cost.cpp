@@ -15,7 +15,7 @@ LinkInput random_link(std::mt19937& random, int cycle) {
   LinkInput link;
   const traffic::Stream main{{{0, draw(15, 0.6 * cycle)}}, 2, 2, draw(300, 900), 1800};
   const traffic::Stream side{{{0.7 * cycle, draw(8, 0.2 * cycle)}}, 2, 2, 150, 1700};
-  link.feeds = {{main, main.flow_vph * 0.9}, {side, 90}};
+  link.feeds = {{main, main.flow_vph * 0.9, {}}, {side, 90, {}}};
   link.uniform_flow_vph = draw(0, 60);
   link.spread = {draw(5, 70), {}, 0.35, 0.8, 1};
   link.downstream = {{{draw(0, cycle), draw(25, 0.6 * cycle)}}, 2, 2, 0, 3600};
