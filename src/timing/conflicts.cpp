@@ -2,6 +2,7 @@
 
 #include <algorithm>
 
+#include "base/natural_order.hpp"
 #include "timing/group_times.hpp"
 #include "timing/paths.hpp"
 
@@ -39,6 +40,7 @@ class Pedestrians {
 
   Diagnostics add() {
     for (const network::Crossing& crossing : m_rules.signal.crossings) place(crossing);
+    std::sort(m_design.groups.begin() + m_vehicle_groups, m_design.groups.end(), [](const Group& a, const Group& b) { return natural_less(a.id, b.id); });
     return std::move(m_errors);
   }
 
