@@ -110,9 +110,4 @@ CyclicOrder clique_lost_time(const SignalDesign& design, const std::vector<int>&
   return cheapest_cyclic_order(clique, change);
 }
 
-double cycle_for_saturation_s(double lost_time_s, double flow_ratio, double degree_of_saturation) {
-  if (flow_ratio >= degree_of_saturation) return std::numeric_limits<double>::infinity();
-  return lost_time_s * degree_of_saturation / (degree_of_saturation - flow_ratio);
-}
-
 }  // namespace entrain::timing

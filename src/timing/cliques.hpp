@@ -21,8 +21,4 @@ CyclicOrder cheapest_cyclic_order(const std::vector<int>& clique, const std::vec
 // Lost time of a clique of vehicle groups: cheapest cyclic sum of intergreen + start-up lost - end gain, seconds.
 CyclicOrder clique_lost_time(const SignalDesign& design, const std::vector<int>& clique);
 
-// L X / (X - Y): the cycle at which a critical flow ratio Y and lost time L meet the degree of saturation X; infinity if Y >= X. X = 1 gives
-// the least cycle L / (1 - Y) of Webster (1958).
-double cycle_for_saturation_s(double lost_time_s, double flow_ratio, double degree_of_saturation);
-
 }  // namespace entrain::timing

@@ -4,6 +4,7 @@
 #include "base/number_text.hpp"
 #include "timing/allocation_parts.hpp"
 #include "timing/cliques.hpp"
+#include "timing/cycle_length.hpp"
 #include "timing/general_allocation.hpp"
 #include "timing/group_times.hpp"
 #include "timing/ring_allocation.hpp"

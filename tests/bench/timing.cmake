@@ -1,0 +1,2 @@
+add_executable(timing_bench timing_bench.cpp)
+target_link_libraries(timing_bench PRIVATE entrain_flags entrain_timing benchmark::benchmark)
