@@ -89,7 +89,7 @@ bool holds(const SignalDesign& design, const std::vector<int>& splits, int cycle
   if (design.ring_barrier) return ring_holds(design, splits, cycle_s);
   const PeriodicModel model = periodic_model(design, cycle_s);
   if (model.anchor < 0) return true;
-  return find_order(with_splits(model, splits), {}, 50'000).picks.has_value();
+  return fits_some_order(model, splits);
 }
 
 int saturation_minimum_s(const SignalDesign& design, const std::vector<double>& flows_vph, double target, const Critical& critical, int least_s) {

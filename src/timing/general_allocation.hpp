@@ -8,6 +8,11 @@ namespace entrain::timing {
 
 // Times of the problem: start and end (of split: green, yellow, red clearance) of every vehicle group that conflicts with something,
 // start of every pedestrian group without a parent. Whole seconds.
+struct CliqueBound {
+  std::vector<std::size_t> groups;  // vehicle groups that all conflict
+  int between_s = 0;                // least total of the whole seconds between their splits, over their cyclic orders; may be negative
+};
+
 struct PeriodicModel {
   int cycle_s = 0;
   OrderProblem problem;                 // without the splits' lower limits
@@ -16,12 +21,19 @@ struct PeriodicModel {
   std::size_t conflict_choices = 0;     // the first so many choices are orders of conflicting groups, the rest guard against traps
   bool contradictory = false;           // a group conflicts with what it must run with
   int anchor = -1;                      // group whose start is time 0; -1: nothing conflicts
+  std::vector<CliqueBound> cliques;     // splits of each plus between_s must fit the cycle: a quick way to say no
 };
 
 PeriodicModel periodic_model(const SignalDesign& design, int cycle_s);
 
-// The problem with `split_s[g]` as least split of vehicle group g.
-OrderProblem with_splits(const PeriodicModel& model, const std::vector<int>& split_s);
+// False if a clique alone shows that vehicle groups with these least splits do not fit.
+bool may_fit(const PeriodicModel& model, const std::vector<int>& split_s);
+
+// Adds `split_s[g]` as least split of every vehicle group g; false if that contradicts what holds.
+bool add_splits(const PeriodicModel& model, const std::vector<int>& split_s, Closure& closure);
+
+// Whether some order holds vehicle groups with these least splits.
+bool fits_some_order(const PeriodicModel& model, const std::vector<int>& split_s);
 
 [[nodiscard]] Result<std::vector<Allocation>> allocate_general(const SignalDesign& design, const AllocationRequest& request);
 

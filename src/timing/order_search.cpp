@@ -9,51 +9,42 @@ Closure::Closure(int times) : m_times(static_cast<std::size_t>(times)), m_gap(m_
   for (std::size_t i = 0; i < m_times; ++i) m_gap[i * m_times + i] = 0;
 }
 
-bool Closure::admits(const Difference& d) const {
-  const int back = gap(d.to, d.from);
-  return back == unrelated || back + d.least <= 0;
-}
-
 bool Closure::add(const Difference& d) {
   if (!admits(d)) return false;
   if (gap(d.from, d.to) >= d.least) return true;
   const auto from = static_cast<std::size_t>(d.from), to = static_cast<std::size_t>(d.to);
+  const int* tail = &m_gap[to * m_times];
   for (std::size_t a = 0; a < m_times; ++a) {
-    const int lead = m_gap[a * m_times + from];
-    if (lead == unrelated) continue;
     int* row = &m_gap[a * m_times];
-    const int* tail = &m_gap[to * m_times];
-    if (row[to] >= lead + d.least) continue;
-    for (std::size_t b = 0; b < m_times; ++b)
-      if (tail[b] != unrelated) row[b] = std::max(row[b], lead + d.least + tail[b]);
+    const int lead = row[from] + d.least;
+    if (row[from] < unrelated / 2 || row[to] >= lead || a == to) continue;
+    for (std::size_t b = 0; b < m_times; ++b) row[b] = std::max(row[b], lead + tail[b]);
   }
   return true;
 }
 
+bool Closure::add(const std::vector<Difference>& differences) {
+  return std::all_of(differences.begin(), differences.end(), [&](const Difference& d) { return add(d); });
+}
+
+bool Closure::admits(const std::vector<Difference>& differences) const {
+  return std::all_of(differences.begin(), differences.end(), [&](const Difference& d) { return admits(d); });
+}
+
 namespace {
-
-bool admits(const Closure& closure, const std::vector<Difference>& alternative) {
-  return std::all_of(alternative.begin(), alternative.end(), [&](const Difference& d) { return closure.admits(d); });
-}
-
-bool add(Closure& closure, const std::vector<Difference>& alternative) {
-  return std::all_of(alternative.begin(), alternative.end(), [&](const Difference& d) { return closure.add(d); });
-}
-
 
 // Room an alternative leaves: the least over its differences of how far they could still grow.
 int room(const Closure& closure, const std::vector<Difference>& alternative) {
   int least = std::numeric_limits<int>::max();
   for (const Difference& d : alternative) {
-    const int back = closure.gap(d.to, d.from);
-    if (back != Closure::unrelated) least = std::min(least, -back - d.least);
+    if (!closure.is_free(d.to, d.from)) least = std::min(least, -closure.gap(d.to, d.from) - d.least);
   }
   return least;
 }
 
 class Search {
  public:
-  Search(const OrderProblem& problem, std::int64_t limit) : m_problem(problem), m_left(limit) {}
+  Search(const std::vector<Choice>& choices, std::int64_t limit) : m_choices(choices), m_left(limit) {}
 
   // Calls `found` at every complete order; stops when it returns false. Returns false when stopped or out of nodes.
   bool run(Closure closure, std::vector<int> picks, const std::function<bool(const std::vector<int>&)>& found) {
@@ -61,10 +52,10 @@ class Search {
     if (!draw_consequences(closure, picks)) return true;
     const auto open = tightest(closure, picks);
     if (!open) return found(picks);
-    const auto& alternatives = m_problem.choices[*open].alternatives;
+    const auto& alternatives = m_choices[*open].alternatives;
     for (const int pick : by_room(closure, alternatives)) {
       Closure next = closure;
-      if (!add(next, alternatives[static_cast<std::size_t>(pick)])) continue;
+      if (!next.add(alternatives[static_cast<std::size_t>(pick)])) continue;
       picks[*open] = pick;
       if (!run(std::move(next), picks, found)) return false;
     }
@@ -81,12 +72,12 @@ class Search {
       for (std::size_t c = 0; c < picks.size(); ++c) {
         if (picks[c] >= 0) continue;
         int only = -1, count = 0;
-        const auto& alternatives = m_problem.choices[c].alternatives;
+        const auto& alternatives = m_choices[c].alternatives;
         for (std::size_t a = 0; a < alternatives.size(); ++a)
-          if (admits(closure, alternatives[a])) only = static_cast<int>(a), ++count;
+          if (closure.admits(alternatives[a])) only = static_cast<int>(a), ++count;
         if (count == 0) return false;
         if (count > 1) continue;
-        if (!add(closure, alternatives[static_cast<std::size_t>(only)])) return false;
+        if (!closure.add(alternatives[static_cast<std::size_t>(only)])) return false;
         picks[c] = only;
         changed = true;
       }
@@ -100,8 +91,8 @@ class Search {
     for (std::size_t c = 0; c < picks.size(); ++c) {
       if (picks[c] >= 0) continue;
       int widest = std::numeric_limits<int>::min();
-      for (const auto& alternative : m_problem.choices[c].alternatives)
-        if (admits(closure, alternative)) widest = std::max(widest, room(closure, alternative));
+      for (const auto& alternative : m_choices[c].alternatives)
+        if (closure.admits(alternative)) widest = std::max(widest, room(closure, alternative));
       if (!best || widest < best_room) best = c, best_room = widest;
     }
     return best;
@@ -110,40 +101,37 @@ class Search {
   std::vector<int> by_room(const Closure& closure, const std::vector<std::vector<Difference>>& alternatives) const {
     std::vector<int> order;
     for (std::size_t a = 0; a < alternatives.size(); ++a)
-      if (admits(closure, alternatives[a])) order.push_back(static_cast<int>(a));
+      if (closure.admits(alternatives[a])) order.push_back(static_cast<int>(a));
     std::stable_sort(order.begin(), order.end(), [&](int a, int b) {
       return room(closure, alternatives[static_cast<std::size_t>(a)]) > room(closure, alternatives[static_cast<std::size_t>(b)]);
     });
     return order;
   }
 
-  const OrderProblem& m_problem;
+  const std::vector<Choice>& m_choices;
   std::int64_t m_left;
   bool m_complete = true;
 };
 
-std::optional<Closure> base_closure(const OrderProblem& problem) {
-  Closure closure(problem.times);
-  if (!add(closure, problem.always)) return std::nullopt;
-  return closure;
-}
-
 }  // namespace
 
-std::optional<Closure> closure_of(const OrderProblem& problem, const std::vector<int>& picks) {
-  auto closure = base_closure(problem);
-  for (std::size_t c = 0; closure && c < problem.choices.size(); ++c)
-    if (!add(*closure, problem.choices[c].alternatives[static_cast<std::size_t>(picks[c])])) closure.reset();
+std::optional<Closure> closure_of(const OrderProblem& problem) {
+  Closure closure(problem.times);
+  if (!closure.add(problem.always)) return std::nullopt;
   return closure;
 }
 
-SearchResult find_order(const OrderProblem& problem, const std::vector<int>& hint, std::int64_t limit) {
-  if (hint.size() == problem.choices.size() && closure_of(problem, hint)) return {true, hint};
-  const auto closure = base_closure(problem);
-  if (!closure) return {};
+std::optional<Closure> closure_of(const std::vector<Choice>& choices, const Closure& base, const std::vector<int>& picks) {
+  std::optional<Closure> closure = base;
+  for (std::size_t c = 0; closure && c < choices.size(); ++c)
+    if (!closure->add(choices[c].alternatives[static_cast<std::size_t>(picks[c])])) closure.reset();
+  return closure;
+}
+
+SearchResult find_order(const std::vector<Choice>& choices, const Closure& base, std::int64_t limit) {
   SearchResult result;
-  Search search(problem, limit);
-  search.run(*closure, std::vector<int>(problem.choices.size(), -1), [&](const std::vector<int>& picks) {
+  Search search(choices, limit);
+  search.run(base, std::vector<int>(choices.size(), -1), [&](const std::vector<int>& picks) {
     result.picks = picks;
     return false;
   });
@@ -151,13 +139,11 @@ SearchResult find_order(const OrderProblem& problem, const std::vector<int>& hin
   return result;
 }
 
-Orders all_orders(const OrderProblem& problem, std::size_t most, std::int64_t limit) {
+Orders all_orders(const std::vector<Choice>& choices, const Closure& base, std::size_t most, std::int64_t limit) {
   Orders orders;
-  const auto closure = base_closure(problem);
-  if (!closure) return orders;
-  Search search(problem, limit);
+  Search search(choices, limit);
   bool cut = false;
-  search.run(*closure, std::vector<int>(problem.choices.size(), -1), [&](const std::vector<int>& picks) {
+  search.run(base, std::vector<int>(choices.size(), -1), [&](const std::vector<int>& picks) {
     if (orders.picks.size() == most) {
       cut = true;
       return false;

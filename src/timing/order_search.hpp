@@ -31,33 +31,38 @@ class Closure {
   explicit Closure(int times);
   // False if the difference contradicts what holds; the closure must not be used afterwards then.
   bool add(const Difference& difference);
-  bool admits(const Difference& difference) const;
+  bool add(const std::vector<Difference>& differences);
+  // Each on its own; together they may still contradict.
+  bool admits(const std::vector<Difference>& differences) const;
+  bool admits(const Difference& difference) const { return gap(difference.to, difference.from) + difference.least <= 0; }
   int gap(int from, int to) const { return m_gap[static_cast<std::size_t>(from) * m_times + static_cast<std::size_t>(to)]; }
-
-  static constexpr int unrelated = -1'000'000'000;
+  // Nothing bounds time[to] - time[from] from below.
+  bool is_free(int from, int to) const { return gap(from, to) < unrelated / 2; }
 
  private:
+  static constexpr int unrelated = -100'000'000;  // sums of two stay within int
   std::size_t m_times;
   std::vector<int> m_gap;
 };
 
 struct SearchResult {
-  bool complete = true;             // false: the limit was met before the answer was certain
+  bool complete = true;                   // false: the limit was met before the answer was certain
   std::optional<std::vector<int>> picks;  // per choice the alternative taken; nothing: no order satisfies all
 };
 
-// Depth first over the choices, the tightest first, with every consequence drawn at once. `limit`: nodes of the search tree.
-// `hint`: picks tried first (may be empty).
-SearchResult find_order(const OrderProblem& problem, const std::vector<int>& hint, std::int64_t limit);
+// Depth first over the choices from what holds in `base`, the tightest first, every consequence drawn at once. `limit`: nodes of the tree.
+SearchResult find_order(const std::vector<Choice>& choices, const Closure& base, std::int64_t limit);
 
 // Every combination of picks that satisfies all, at most `most` of them.
 struct Orders {
   bool complete = true;
   std::vector<std::vector<int>> picks;
 };
-Orders all_orders(const OrderProblem& problem, std::size_t most, std::int64_t limit);
+Orders all_orders(const std::vector<Choice>& choices, const Closure& base, std::size_t most, std::int64_t limit);
 
-// The closure under given picks; nothing if they contradict.
-std::optional<Closure> closure_of(const OrderProblem& problem, const std::vector<int>& picks);
+// What always holds; nothing if it contradicts itself.
+std::optional<Closure> closure_of(const OrderProblem& problem);
+// `base` and the picked alternatives; nothing if they contradict.
+std::optional<Closure> closure_of(const std::vector<Choice>& choices, const Closure& base, const std::vector<int>& picks);
 
 }  // namespace entrain::timing

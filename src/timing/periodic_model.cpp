@@ -2,6 +2,7 @@
 #include <cmath>
 #include <map>
 
+#include "timing/cliques.hpp"
 #include "timing/general_allocation.hpp"
 #include "timing/group_times.hpp"
 #include "timing/turn_trap.hpp"
@@ -33,6 +34,7 @@ class Builder {
     for (const auto& [pair, gaps] : m_pairs) m_model.problem.choices.push_back(order_choice(pair, gaps));
     m_model.conflict_choices = m_model.problem.choices.size();
     for (const Trap& trap : possible_traps(m_design)) add_trap_guard(trap);
+    add_cliques();
     return m_model;
   }
 
@@ -126,6 +128,24 @@ class Builder {
     m_model.problem.choices.push_back(std::move(choice));
   }
 
+  void add_cliques() {
+    std::vector<int> vehicles;
+    for (int g = 0; g < static_cast<int>(m_model.end.size()); ++g)
+      if (end_of(g) >= 0) vehicles.push_back(g);
+    for (const auto& clique : maximal_cliques(m_design, vehicles)) {
+      std::vector<std::vector<double>> between(clique.size(), std::vector<double>(clique.size(), 0));
+      for (std::size_t i = 0; i < clique.size(); ++i)
+        for (std::size_t j = 0; j < clique.size(); ++j)
+          if (const Conflict* c = i == j ? nullptr : find_conflict(m_design, clique[i], clique[j]))
+            between[i][j] = clear_point(clique[i], c->a == clique[i] ? c->intergreen_ab : c->intergreen_ba).offset_s;
+      CliqueBound bound;
+      bound.groups.assign(clique.begin(), clique.end());
+      if (clique.size() > 12) continue;  // the order would not be the cheapest for certain
+      bound.between_s = static_cast<int>(std::lround(cheapest_cyclic_order(clique, between).sum));
+      m_model.cliques.push_back(std::move(bound));
+    }
+  }
+
   const SignalDesign& m_design;
   PeriodicModel m_model;
   std::map<Pair, Gaps> m_pairs;
@@ -135,11 +155,18 @@ class Builder {
 
 PeriodicModel periodic_model(const SignalDesign& design, int cycle_s) { return Builder(design, cycle_s).build(); }
 
-OrderProblem with_splits(const PeriodicModel& model, const std::vector<int>& split_s) {
-  OrderProblem problem = model.problem;
+bool may_fit(const PeriodicModel& model, const std::vector<int>& split_s) {
+  return std::none_of(model.cliques.begin(), model.cliques.end(), [&](const CliqueBound& clique) {
+    int sum = clique.between_s;
+    for (const std::size_t g : clique.groups) sum += split_s[g];
+    return sum > model.cycle_s;
+  });
+}
+
+bool add_splits(const PeriodicModel& model, const std::vector<int>& split_s, Closure& closure) {
   for (std::size_t g = 0; g < split_s.size(); ++g)
-    if (model.end[g] >= 0) problem.always.push_back({model.start[g], model.end[g], split_s[g]});
-  return problem;
+    if (model.end[g] >= 0 && !closure.add(Difference{model.start[g], model.end[g], split_s[g]})) return false;
+  return true;
 }
 
 }  // namespace entrain::timing

@@ -41,7 +41,7 @@ struct RingOrder {
 std::string side_word(const std::vector<std::string>& words) {
   std::string text;
   for (const std::string& word : words)
-    if (word != "-") text += (text.empty() ? "" : "-") + word;
+    if (word != "-") text.append(text.empty() ? "" : "-").append(word);
   return text.empty() ? "-" : text;
 }
 
@@ -65,7 +65,7 @@ std::vector<RingOrder> ring_orders(const SignalDesign& design) {
     }
     orders.clear();
     for (auto& [order, words] : grown) {
-      order.order += (side > 0 ? "|" : "") + side_word(words);
+      order.order.append(side > 0 ? "|" : "").append(side_word(words));
       orders.push_back(std::move(order));
     }
   }
@@ -184,7 +184,7 @@ bool is_same_sequence(const std::string& a, const std::string& b) { return witho
 
 Diagnostic refused_sequence(const SignalDesign& design, const AllocationRequest& request, const std::vector<RingOrder>& orders) {
   std::vector<std::string> possible;
-  for (const RingOrder& order : orders) possible.push_back("\"" + sequence_text(design, order.rings) + "\"");
+  for (const RingOrder& order : orders) possible.push_back(std::string(1, '"').append(sequence_text(design, order.rings)).append(1, '"'));
   return error(where_of(design), "the fixed sequence \"" + printable(request.fixed_sequence) + "\"", "one of its orders: " + list_of(possible),
                "Correct the sequence or free it.");
 }
@@ -205,7 +205,7 @@ std::string sequence_text(const SignalDesign& design, const Rings& rings) {
     if (r > 0) text += " / ";
     for (std::size_t s = 0; s < rings[r].size(); ++s) {
       if (s > 0) text += "|";
-      for (std::size_t i = 0; i < rings[r][s].size(); ++i) text += (i > 0 ? " " : "") + group_at(design, rings[r][s][i]).id;
+      for (std::size_t i = 0; i < rings[r][s].size(); ++i) text.append(i > 0 ? " " : "").append(group_at(design, rings[r][s][i]).id);
     }
   }
   return text;
@@ -243,7 +243,7 @@ LongestSides longest_sides(const SignalDesign& design, const std::vector<double>
       out.groups.push_back(rings[longest][side][i]);
       words.push_back(group_at(design, rings[longest][side][i]).id + " (" + std::to_string(needs[longest][side][i].least_s) + " s)");
     }
-    if (!words.empty()) out.text += (out.text.empty() ? "" : ", then ") + list_of(words);
+    if (!words.empty()) out.text.append(out.text.empty() ? "" : ", then ").append(list_of(words));
     out.total_s += std::max(0, length);
   }
   out.text += " need " + std::to_string(out.total_s) + " s";
