@@ -2,6 +2,8 @@
 
 #include <algorithm>
 
+#include "base/number_text.hpp"
+
 namespace entrain::bands {
 namespace {
 
@@ -11,7 +13,7 @@ constexpr double longest_travel_s = 1'000'000.0;
 std::string text(double value) {
   if (std::isnan(value)) return "not a number";
   if (std::isinf(value)) return value > 0 ? "infinity" : "minus infinity";
-  return std::to_string(value);
+  return number_text(value, 9);
 }
 
 class Checker {
@@ -36,60 +38,64 @@ class Checker {
 
   void check_station(std::size_t index) {
     const Station& station = m_problem.stations[index];
-    const std::string where = "station " + std::to_string(index);
-    if (station.option_count < 1) add(where, "no option", "at least one", "Give the station its windows.");
+    const auto where = [&] { return "station " + std::to_string(index); };
+    if (station.option_count < 1) add(where(), "no option", "at least one", "Give the station its windows.");
     if (station.fixed_option && (*station.fixed_option < 0 || *station.fixed_option >= station.option_count))
-      add(where + ", fixed option", std::to_string(*station.fixed_option), "an index below " + std::to_string(station.option_count),
-          "Fix an option that the station has.");
+      add(where() + ", fixed option", std::to_string(*station.fixed_option), "an index below " + std::to_string(station.option_count), "Fix an option that the station has.");
     if (station.fixed_offset_s && !(std::abs(*station.fixed_offset_s) <= longest_travel_s))
-      add(where + ", fixed offset", text(*station.fixed_offset_s), "a finite number of seconds", "Give the offset in seconds.");
+      add(where() + ", fixed offset", text(*station.fixed_offset_s), "a finite number of seconds", "Give the offset in seconds.");
   }
 
   void check_corridor(std::size_t index) {
     const Corridor& corridor = m_problem.corridors[index];
-    const std::string where = "corridor " + std::to_string(index);
     if (corridor.directions.empty() || corridor.directions.size() > 2)
-      add(where, std::to_string(corridor.directions.size()) + " directions", "one or two", "Give a corridor one or two directions.");
+      add("corridor " + std::to_string(index), std::to_string(corridor.directions.size()) + " directions", "one or two", "Give a corridor one or two directions.");
     double weights = 0;
     for (std::size_t d = 0; d < corridor.directions.size(); ++d) {
       const Direction& direction = corridor.directions[d];
-      const std::string place = where + ", direction " + std::to_string(d);
-      if (!(direction.weight >= 0) || !(direction.weight <= 1e6)) add(place + ", weight", text(direction.weight), "0 to 1000000", "Give a share of the band.");
+      m_place = {index, d, 0, 0, 0};
+      if (!(direction.weight >= 0) || !(direction.weight <= 1e6)) add(direction_text() + ", weight", text(direction.weight), "0 to 1000000", "Give a share of the band.");
       weights += direction.weight;
-      if (direction.stops.empty()) add(place, "no station", "at least one", "List the stations in order.");
-      for (std::size_t s = 0; s < direction.stops.size(); ++s) check_stop(direction.stops[s], place + ", stop " + std::to_string(s));
+      if (direction.stops.empty()) add(direction_text(), "no station", "at least one", "List the stations in order.");
+      for (m_place.stop = 0; m_place.stop < direction.stops.size(); ++m_place.stop) check_stop(direction.stops[m_place.stop]);
     }
-    if (!corridor.directions.empty() && weights == 0) add(where + ", weights", "all 0", "at least one above 0", "Give the direction that counts a weight.");
+    if (!corridor.directions.empty() && weights == 0)
+      add("corridor " + std::to_string(index) + ", weights", "all 0", "at least one above 0", "Give the direction that counts a weight.");
   }
 
-  void check_stop(const Stop& stop, const std::string& where) {
+  void check_stop(const Stop& stop) {
     if (stop.station < 0 || static_cast<std::size_t>(stop.station) >= m_problem.stations.size()) {
-      add(where, "station " + std::to_string(stop.station), "an index below " + std::to_string(m_problem.stations.size()), "Name a station of the list.");
+      add(stop_text(), "station " + std::to_string(stop.station), "an index below " + std::to_string(m_problem.stations.size()), "Name a station of the list.");
       return;
     }
     const int options = m_problem.stations[static_cast<std::size_t>(stop.station)].option_count;
-    if (!(std::abs(stop.travel_s) <= longest_travel_s)) add(where + ", travel time", text(stop.travel_s), "a finite number of seconds", "Give the travel time in seconds.");
-    else if (stop.travel_s < 0) add(where + ", travel time", text(stop.travel_s), "0 or more", "Give the travel time in seconds.");
-    if (!(stop.clearance_s >= 0) || !(stop.clearance_s <= longest_travel_s)) add(where + ", queue clearance", text(stop.clearance_s), "0 or more", "Give the time in seconds.");
+    if (!(stop.travel_s >= 0) || !(stop.travel_s <= longest_travel_s)) add(stop_text() + ", travel time", text(stop.travel_s), "0 or more, finite", "Give the travel time in seconds.");
+    if (!(stop.clearance_s >= 0) || !(stop.clearance_s <= longest_travel_s)) add(stop_text() + ", queue clearance", text(stop.clearance_s), "0 or more, finite", "Give the time in seconds.");
     if (static_cast<int>(stop.windows.size()) != options)
-      add(where, "windows for " + std::to_string(stop.windows.size()) + " options", std::to_string(options), "Give windows for every option of the station.");
-    for (std::size_t o = 0; o < stop.windows.size(); ++o)
-      for (std::size_t w = 0; w < stop.windows[o].size(); ++w)
-        check_window(stop.windows[o][w], where + ", option " + std::to_string(o) + ", window " + std::to_string(w));
+      add(stop_text(), "windows for " + std::to_string(stop.windows.size()) + " options", std::to_string(options), "Give windows for every option of the station.");
+    for (m_place.option = 0; m_place.option < stop.windows.size(); ++m_place.option)
+      for (m_place.window = 0; m_place.window < stop.windows[m_place.option].size(); ++m_place.window) check_window(stop.windows[m_place.option][m_place.window]);
   }
 
-  void check_window(const Window& window, const std::string& where) {
-    if (!(std::abs(window.start_s) <= longest_travel_s)) add(where + ", start", text(window.start_s), "a finite number of seconds", "Give the start in seconds.");
-    if (!(window.duration_s >= 0)) add(where + ", duration", text(window.duration_s), "0 or more", "Give the duration in seconds.");
+  void check_window(const Window& window) {
+    if (!(std::abs(window.start_s) <= longest_travel_s)) add(window_text() + ", start", text(window.start_s), "a finite number of seconds", "Give the start in seconds.");
+    if (!(window.duration_s >= 0)) add(window_text() + ", duration", text(window.duration_s), "0 or more", "Give the duration in seconds.");
     else if (m_problem.cycle_s > 0 && to_excess(window.duration_s) > 0)
-      add(where + ", duration", text(window.duration_s), "at most the cycle, " + text(m_problem.cycle_s), "Shorten the window or lengthen the cycle.");
+      add(window_text() + ", duration", text(window.duration_s), "at most the cycle, " + text(m_problem.cycle_s), "Shorten the window or lengthen the cycle.");
   }
+
+  std::string direction_text() const { return "corridor " + std::to_string(m_place.corridor) + ", direction " + std::to_string(m_place.direction); }
+  std::string stop_text() const { return direction_text() + ", stop " + std::to_string(m_place.stop); }
+  std::string window_text() const { return stop_text() + ", option " + std::to_string(m_place.option) + ", window " + std::to_string(m_place.window); }
 
   // Above 0 where the duration is longer than the cycle by more than rounding.
   double to_excess(double duration_s) const { return duration_s - m_problem.cycle_s > 1e-9 ? duration_s - m_problem.cycle_s : 0; }
 
+  struct Place { std::size_t corridor = 0, direction = 0, stop = 0, option = 0, window = 0; };
+
   const Problem& m_problem;
   Diagnostics m_found;
+  Place m_place;
 };
 
 // Windows in ticks modulo `period`, merged where they overlap or touch, in order of start.
@@ -206,6 +212,17 @@ class Compiler {
 }  // namespace
 
 Diagnostics check(const Problem& problem) { return Checker(problem).run(); }
+
+Diagnostics check_lengths(const TwoWayInput& input) {
+  Diagnostics found;
+  const std::size_t links = input.stations.empty() ? 0 : input.stations.size() - 1;
+  const auto expected = std::to_string(links) + ", one between each two stations";
+  if (input.forward_travel_s.size() != links)
+    found.push_back(error("forward travel times", std::to_string(input.forward_travel_s.size()), expected, "Give one travel time for each link."));
+  if (!input.one_way && input.backward_travel_s.size() != links)
+    found.push_back(error("backward travel times", std::to_string(input.backward_travel_s.size()), expected, "Give one travel time for each link, or say one_way."));
+  return found;
+}
 
 Result<Compiled> compile(const Problem& problem) {
   Diagnostics found = check(problem);

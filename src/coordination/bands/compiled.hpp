@@ -51,6 +51,8 @@ struct Compiled {
 
 // Everything that is wrong with the problem, at once.
 Diagnostics check(const Problem& problem);
+// Travel times that do not match the number of stations.
+Diagnostics check_lengths(const TwoWayInput& input);
 [[nodiscard]] Result<Compiled> compile(const Problem& problem);
 
 // The longest window of the visit among the options, 0 if none.

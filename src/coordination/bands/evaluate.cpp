@@ -42,7 +42,13 @@ Result<Answer> evaluate_bands(const Problem& problem, const std::vector<int>& op
 }
 
 Result<Answer> evaluate_bands(const TwoWayInput& input, const std::vector<int>& options, const std::vector<double>& offsets_s) {
-  return evaluate_bands(to_problem(input), options, offsets_s);
+  const Problem problem = to_problem(input);
+  Diagnostics found = check_lengths(input);
+  if (!found.empty()) {
+    append(found, check(problem));
+    return failure(std::move(found));
+  }
+  return evaluate_bands(problem, options, offsets_s);
 }
 
 Result<std::vector<std::vector<OffsetArc>>> admissible_offsets(const Problem& problem, int corridor, int direction, const std::vector<int>& options,

@@ -63,19 +63,28 @@ class Solver {
  private:
   void solve_forest(const std::vector<int>& corridors) {
     bool proved = true;
-    const OptionLists options = choose_shared_options(m_problem, corridors, m_out.own, m_most_nodes, proved);
-    m_out.proved = m_out.proved && proved;
-    std::vector<Alone> joint = m_out.own;
+    OptionLists options = choose_shared_options(m_problem, corridors, m_out.own, m_most_nodes, false, proved);
+    std::vector<Alone> joint = alone_with(corridors, options);
     double least = 1;
     for (const int c : corridors) {
       const auto index = static_cast<std::size_t>(c);
-      joint[index] = solve_alone(m_problem, c, options, m_most_nodes);
       m_out.bound[index] = joint[index].widths;
       m_out.witness[index] = joint[index].witness;
       least = std::min(least, ratio_of(joint[index].share, m_out.own[index]));
     }
     if (proved) m_out.least_ratio_bound = std::min(m_out.least_ratio_bound, least);
+    if (m_whole_seconds && proved) {
+      options = choose_shared_options(m_problem, corridors, m_out.own, m_most_nodes, true, proved);
+      joint = alone_with(corridors, options);
+    }
+    m_out.proved = m_out.proved && proved;
     settle_forest(corridors, joint, options);
+  }
+
+  std::vector<Alone> alone_with(const std::vector<int>& corridors, const OptionLists& options) const {
+    std::vector<Alone> joint = m_out.own;
+    for (const int c : corridors) joint[static_cast<std::size_t>(c)] = solve_alone(m_problem, c, options, m_most_nodes);
+    return joint;
   }
 
   // Corridors keep their shape; each is moved as a whole to where it agrees with those already placed.

@@ -27,8 +27,9 @@ std::vector<std::vector<int>> components_of(const Compiled& problem);
 bool is_forest(const Compiled& problem, const std::vector<int>& corridors);
 
 // Option lists in which stations that several corridors meet have one option left: the sorted shares of own best are lexicographically
-// largest. `proved` false: too many combinations, the first options were taken.
-OptionLists choose_shared_options(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, std::int64_t most_nodes, bool& proved);
+// largest, with whole-second offsets where asked for. `proved` false: too many combinations, the first options were taken.
+OptionLists choose_shared_options(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, std::int64_t most_nodes, bool whole_seconds,
+                                  bool& proved);
 
 // Bands of corridors whose sharing forms rings.
 struct RingAnswer {

@@ -9,8 +9,8 @@ namespace {
 
 class SharedOptions {
  public:
-  SharedOptions(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, std::int64_t most_nodes)
-      : m_problem(problem), m_corridors(corridors), m_own(own), m_nodes(most_nodes), m_options(allowed_options(problem)) {
+  SharedOptions(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, std::int64_t most_nodes, bool whole_seconds)
+      : m_whole_seconds(whole_seconds), m_problem(problem), m_corridors(corridors), m_own(own), m_nodes(most_nodes), m_options(allowed_options(problem)) {
     for (std::size_t s = 0; s < problem.stations.size(); ++s)
       if (is_shared(problem.stations[s]) && m_options[s].size() > 1) m_shared.push_back(static_cast<int>(s));
   }
@@ -49,7 +49,9 @@ class SharedOptions {
     }
     const auto known = m_known.find(key);
     if (known != m_known.end()) return known->second;
-    const double value = ratio_of(solve_alone(m_problem, corridor, m_options, 20'000).share, m_own[static_cast<std::size_t>(corridor)]);
+    Alone alone = solve_alone(m_problem, corridor, m_options, 20'000);
+    if (m_whole_seconds) alone = solve_alone_whole_seconds(m_problem, corridor, m_options, alone);
+    const double value = ratio_of(alone.share, m_own[static_cast<std::size_t>(corridor)]);
     m_known.emplace(std::move(key), value);
     return value;
   }
@@ -86,6 +88,7 @@ class SharedOptions {
     m_options[static_cast<std::size_t>(m_shared[depth])] = all;
   }
 
+  bool m_whole_seconds;
   const Compiled& m_problem;
   const std::vector<int>& m_corridors;
   const std::vector<Alone>& m_own;
@@ -98,8 +101,9 @@ class SharedOptions {
 
 }  // namespace
 
-OptionLists choose_shared_options(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, std::int64_t most_nodes, bool& proved) {
-  return SharedOptions(problem, corridors, own, most_nodes).run(proved);
+OptionLists choose_shared_options(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, std::int64_t most_nodes, bool whole_seconds,
+                                  bool& proved) {
+  return SharedOptions(problem, corridors, own, most_nodes, whole_seconds).run(proved);
 }
 
 }  // namespace entrain::bands

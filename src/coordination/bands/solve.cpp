@@ -8,14 +8,6 @@
 namespace entrain::bands {
 namespace {
 
-void check_lengths(const TwoWayInput& input, Diagnostics& found) {
-  const std::size_t links = input.stations.empty() ? 0 : input.stations.size() - 1;
-  if (input.forward_travel_s.size() != links)
-    found.push_back(error("forward travel times", std::to_string(input.forward_travel_s.size()), std::to_string(links) + ", one between each two stations", "Give one travel time for each link."));
-  if (!input.one_way && input.backward_travel_s.size() != links)
-    found.push_back(error("backward travel times", std::to_string(input.backward_travel_s.size()), std::to_string(links) + ", one between each two stations", "Give one travel time for each link, or say one_way."));
-}
-
 void check_whole_seconds(const Compiled& compiled, Diagnostics& found) {
   if (compiled.cycle % ticks_per_second != 0)
     found.push_back(error("cycle", std::to_string(to_seconds(compiled.cycle)), "a whole number of seconds", "Round the cycle, or ask for continuous offsets."));
@@ -58,9 +50,8 @@ Result<Answer> solve(const Problem& problem, const Effort& effort, bool whole_se
 }
 
 Result<Answer> solve(const TwoWayInput& input, bool whole_seconds) {
-  Diagnostics found;
-  check_lengths(input, found);
   const Problem problem = to_problem(input);
+  Diagnostics found = check_lengths(input);
   if (!found.empty()) {
     append(found, check(problem));
     return failure(std::move(found));

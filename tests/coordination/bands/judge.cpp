@@ -11,7 +11,7 @@ using Mask = std::uint64_t;
 
 class Cells {
  public:
-  Cells(const TwoWayInput& input, int cells_per_s) : m_input(input), m_per_s(cells_per_s), m_count(cells(input.cycle_s)), m_all(m_count == 64 ? ~Mask{0} : (Mask{1} << m_count) - 1) {}
+  Cells(double cycle_s, int cells_per_s) : m_per_s(cells_per_s), m_count(cells(cycle_s)), m_all(m_count == 64 ? ~Mask{0} : (Mask{1} << m_count) - 1) {}
 
   int cells(double seconds) const { return static_cast<int>(std::lround(seconds * m_per_s)); }
   int count() const { return m_count; }
@@ -43,14 +43,13 @@ class Cells {
   Mask all() const { return m_all; }
 
  private:
-  const TwoWayInput& m_input;
   int m_per_s, m_count;
   Mask m_all;
 };
 
 class Search {
  public:
-  Search(const TwoWayInput& input, int cells_per_s, double offset_step_s) : m_input(input), m_cells(input, cells_per_s), m_per_s(cells_per_s), m_step(m_cells.cells(offset_step_s)) {
+  Search(const TwoWayInput& input, int cells_per_s, double offset_step_s) : m_input(input), m_cells(input.cycle_s, cells_per_s), m_per_s(cells_per_s), m_step(m_cells.cells(offset_step_s)) {
     int forward = 0, backward = 0;
     for (std::size_t i = 0; i < input.stations.size(); ++i) {
       m_forward_shift.push_back(forward);
@@ -103,7 +102,102 @@ class Search {
   double m_share = 0, m_total = 0;
 };
 
+class JointSearch {
+ public:
+  JointSearch(const Problem& problem, const std::vector<double>& own_best_s, int cells_per_s, double offset_step_s)
+      : m_problem(problem), m_own(own_best_s), m_cells(problem.cycle_s, cells_per_s), m_per_s(cells_per_s), m_step(m_cells.cells(offset_step_s)) {}
+
+  std::vector<double> run() {
+    std::vector<std::vector<Mask>> open;
+    for (const Corridor& corridor : m_problem.corridors) open.emplace_back(corridor.directions.size(), m_cells.all());
+    descend(0, open);
+    return m_best;
+  }
+
+ private:
+  void descend(std::size_t s, const std::vector<std::vector<Mask>>& open) {
+    if (s == m_problem.stations.size()) return keep(open);
+    const Station& station = m_problem.stations[s];
+    for (int option = 0; option < station.option_count; ++option) {
+      if (station.fixed_option && *station.fixed_option != option) continue;
+      if (station.fixed_offset_s) place(s, option, m_cells.cells(*station.fixed_offset_s), open);
+      else
+        for (int x = 0; x < m_cells.count() / (station.half_period ? 2 : 1); x += m_step) place(s, option, x, open);
+    }
+  }
+
+  void place(std::size_t s, int option, int x, std::vector<std::vector<Mask>> open) {
+    for (std::size_t c = 0; c < open.size(); ++c)
+      for (std::size_t d = 0; d < open[c].size(); ++d) {
+        double travel_s = 0;
+        for (const Stop& stop : m_problem.corridors[c].directions[d].stops) {
+          travel_s += stop.travel_s;
+          if (static_cast<std::size_t>(stop.station) != s) continue;
+          open[c][d] &= m_cells.rotate(m_cells.mask(stop.windows[static_cast<std::size_t>(option)], stop.clearance_s), x - m_cells.cells(travel_s));
+        }
+      }
+    descend(s + 1, open);
+  }
+
+  void keep(const std::vector<std::vector<Mask>>& open) {
+    std::vector<double> ratios;
+    for (std::size_t c = 0; c < open.size(); ++c) {
+      double share = 1e9;
+      for (std::size_t d = 0; d < open[c].size(); ++d)
+        if (m_problem.corridors[c].directions[d].weight > 0)
+          share = std::min(share, static_cast<double>(m_cells.longest_run(open[c][d])) / m_per_s / m_problem.corridors[c].directions[d].weight);
+      ratios.push_back(m_own[c] > 0 ? std::min(1.0, share / m_own[c]) : 1.0);
+    }
+    std::sort(ratios.begin(), ratios.end());
+    if (m_best.empty() || m_best < ratios) m_best = ratios;
+  }
+
+  const Problem& m_problem;
+  const std::vector<double>& m_own;
+  Cells m_cells;
+  int m_per_s, m_step;
+  std::vector<double> m_best;
+};
+
 }  // namespace
+
+std::vector<double> exhaustive_joint(const Problem& problem, const std::vector<double>& own_best_s, int cells_per_s, double offset_step_s) {
+  return JointSearch(problem, own_best_s, cells_per_s, offset_step_s).run();
+}
+
+Problem random_joint(std::mt19937& random, Shape shape, bool orders, int fixed) {
+  const auto pick = [&](int from, int to) { return std::uniform_int_distribution<int>(from, to)(random); };
+  std::vector<std::vector<int>> lists;
+  switch (shape) {
+    case Shape::cross: lists = {{0, 1, 2}, {3, 1}}; break;
+    case Shape::two_shared: lists = {{0, 1, 2}, {2, 0}}; break;
+    case Shape::triangle: lists = {{0, 1}, {1, 2}, {2, 0}}; break;
+    case Shape::chain: lists = {{0, 1}, {1, 2}, {2, 3}}; break;
+  }
+  Problem problem;
+  problem.cycle_s = 2 * pick(4, 5);
+  const int cycle = static_cast<int>(problem.cycle_s);
+  int stations = 0;
+  for (const auto& list : lists) stations = std::max(stations, *std::max_element(list.begin(), list.end()) + 1);
+  for (int s = 0; s < stations; ++s) problem.stations.push_back({orders ? pick(1, 2) : 1, {}, {}, false});
+  for (int f = 0; f < fixed; ++f) problem.stations[static_cast<std::size_t>(pick(0, stations - 1))].fixed_offset_s = pick(0, cycle - 1);
+  for (const auto& list : lists) {
+    Corridor corridor;
+    for (const bool forward : {true, false}) {
+      Direction direction;
+      for (std::size_t i = 0; i < list.size(); ++i) {
+        const int station = list[forward ? i : list.size() - 1 - i];
+        Stop stop{station, i == 0 ? 0.0 : pick(0, 15), 0, {}};
+        for (int o = 0; o < problem.stations[static_cast<std::size_t>(station)].option_count; ++o)
+          stop.windows.push_back({{static_cast<double>(pick(0, cycle - 1)), static_cast<double>(pick(2, cycle - 2))}});
+        direction.stops.push_back(stop);
+      }
+      corridor.directions.push_back(direction);
+    }
+    problem.corridors.push_back(corridor);
+  }
+  return problem;
+}
 
 Best exhaustive(const TwoWayInput& input, int cells_per_s, double offset_step_s) { return Search(input, cells_per_s, offset_step_s).run(); }
 

@@ -4,6 +4,7 @@
 #include <cstdint>
 #include <random>
 #include <string>
+#include <vector>
 
 #include "coordination/bands/model.hpp"
 
@@ -24,6 +25,14 @@ struct Kind {
 };
 // A small random corridor; the cycle is even, whole seconds.
 TwoWayInput random_corridor(std::mt19937& random, const Kind& kind);
+
+// The best vector of min(1, share / own best share) by corridor, sorted ascending, over all offsets that are multiples of the step.
+// `own_best_s` by corridor.
+std::vector<double> exhaustive_joint(const Problem& problem, const std::vector<double>& own_best_s, int cells_per_s, double offset_step_s);
+
+enum class Shape { cross, two_shared, triangle, chain };
+// Small random corridors that share stations.
+Problem random_joint(std::mt19937& random, Shape shape, bool orders, int fixed);
 
 // The input in one line, for the message of a failing check.
 std::string text(const TwoWayInput& input);
