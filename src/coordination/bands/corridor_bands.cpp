@@ -47,6 +47,59 @@ CorridorBands::CorridorBands(const Compiled& problem, int corridor, const std::v
   met.erase(std::unique(met.begin(), met.end()), met.end());
   for (const int station : met)
     if (!include || (*include)[static_cast<std::size_t>(station)]) add_station(station, options_of(station));
+  prepare_shares();
+}
+
+// What the first look at the shares needs: every pair's terms, the share at which each pair becomes too narrow.
+void CorridorBands::prepare_shares() {
+  if (!m_two_way) return;
+  const auto& frames = m_problem.corridors[static_cast<std::size_t>(m_corridor)];
+  const double w0 = m_problem.frames[static_cast<std::size_t>(frames[0])].weight, w1 = m_problem.frames[static_cast<std::size_t>(frames[1])].weight;
+  m_cap = m_narrowest = infinite;
+  for (const CapGroup& group : m_cap_groups) m_cap = std::min(m_cap, limit(group.longest, 0, group.second ? w1 : w0));
+  for (const Group& group : m_groups) {
+    double best = -infinite;
+    for (int p = group.begin; p < group.end; ++p) {
+      const Pair& pair = m_pairs[static_cast<std::size_t>(p)];
+      const double own = std::min(limit(pair.g, 0, w0), limit(pair.h, 0, w1));
+      best = std::max(best, own);
+      m_narrowest = std::min(m_narrowest, own);
+    }
+    m_cap = std::min(m_cap, best);
+  }
+  m_complete = m_cap >= 0 && filter(0, {}, 0, 0);
+  m_all_stations = m_sweep_stations;
+  m_all_terms = m_terms;
+}
+
+// True if the widths fit at this phi; one look at every station.
+bool CorridorBands::fits_at(const Widths& widths, Tick phi) const {
+  const Tick total = widths.first + widths.second;
+  for (const CapGroup& group : m_cap_groups)
+    if (group.longest < (group.second ? widths.second : widths.first)) return false;
+  return std::all_of(m_groups.begin(), m_groups.end(), [&](const Group& group) {
+    return std::any_of(m_pairs.begin() + group.begin, m_pairs.begin() + group.end, [&](const Pair& pair) {
+      if (pair.g < widths.first || pair.h < widths.second) return false;
+      Tick z = phi + pair.c;
+      while (z >= group.period) z -= group.period;
+      return z <= pair.reserve - total || pair.first_open || pair.second_open;
+    });
+  });
+}
+
+// The usual case: the peak over all pairs of windows is also the answer. False where narrow pairs interfere.
+bool CorridorBands::best_at_peak(CorridorOptimum& optimum, double first_weight, double second_weight) {
+  const Peak peak = m_sweep.highest(m_all_stations, m_all_terms, m_problem.cycle);
+  const double t = std::min(m_cap, static_cast<double>(peak.value) / (first_weight + second_weight));
+  if (!(t > 0)) return false;
+  Widths widths{std::llround(first_weight * t), std::llround(second_weight * t)};
+  while (widths.first + widths.second > peak.value) --(widths.second > 0 ? widths.second : widths.first);
+  if (t > m_narrowest && !fits_at(widths, peak.phi)) return false;
+  optimum.share = t;
+  optimum.widths = widths;
+  optimum.phi = peak.phi;
+  if (widths.first + widths.second < peak.value) extend(optimum);
+  return true;
 }
 
 void CorridorBands::add_station(int station, const std::vector<int>& options) {
@@ -217,6 +270,7 @@ CorridorOptimum CorridorBands::best() {
   const double w1 = m_problem.frames[static_cast<std::size_t>(frames[1])].weight;
   CorridorOptimum optimum;
   if (w0 > 0 && w1 > 0) {
+    if (m_complete && best_at_peak(optimum, w0, w1)) return optimum;
     const double t = climb({}, w0, w1);
     if (!(t > 0)) return one_direction(widest(0) != widest(1) ? (widest(0) > widest(1) ? 0 : 1) : (w0 >= w1 ? 0 : 1));
     optimum.share = t;

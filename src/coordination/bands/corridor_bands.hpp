@@ -74,6 +74,9 @@ class CorridorBands {
   void add_pairs(int station, const Visit& first, const Visit& second, const std::vector<int>& options);
   void add_caps(int station, const Visit& visit, bool second, const std::vector<int>& options);
   void add_station(int station, const std::vector<int>& options);
+  void prepare_shares();
+  bool fits_at(const Widths& widths, Tick phi) const;
+  bool best_at_peak(CorridorOptimum& optimum, double first_weight, double second_weight);
   bool filter(double t, Widths base, double first_rate, double second_rate);
   double climb(Widths base, double first_rate, double second_rate);
   Widths settle(double t, Widths base, double first_rate, double second_rate);
@@ -96,6 +99,10 @@ class CorridorBands {
   const std::vector<std::vector<int>>& m_options;
   std::vector<SweepStation> m_sweep_stations;
   std::vector<SweepTerm> m_terms;
+  std::vector<SweepStation> m_all_stations;  // of all pairs
+  std::vector<SweepTerm> m_all_terms;
+  double m_cap = 0, m_narrowest = 0;  // shares at which the first station has no pair left, at which the first pair drops out
+  bool m_complete = false;            // every station has a pair
   int m_kept = 0;  // pairs the last filter kept, also those of stations that leave phi free
   std::vector<int> m_owner;  // station of each sweep station
   Sweep m_sweep;

@@ -1,4 +1,4 @@
-// The highest point of the lower envelope: max over phi of min over stations of max over terms of reserve - ((phi + c) mod period).
+// The highest point of a lower envelope: max over phi of min over stations of max over terms of reserve - ((phi + c) mod period).
 #pragma once
 
 #include <limits>
@@ -26,28 +26,36 @@ struct Peak {
   Tick phi = 0;    // the least phi in [0, cycle) that reaches it
 };
 
-// Every term falls with slope -1 and jumps up where it is reset, so level = value + phi is a rising staircase for each station. The
-// station with the lowest level rules until its own next step: the sweep leaps there. A heap keeps the stations by level and brings
-// one up to date only when it comes to the top. O(terms * log(stations)) at worst; far fewer steps are looked at in practice.
+// Every term falls with slope -1 and jumps up where it is reset, so level = value + phi is a rising staircase for each station. A stair
+// that ends at r with level L caps the envelope at L - phi for *every* phi before r, because the stairs before it are lower still. So
+// the envelope is a running minimum over stairs in order of r, and its peaks lie at the r. Buckets over r find the few that can hold
+// the highest: linear time in the number of stairs as a rule, and never more than one sort of them.
 class Sweep {
  public:
   // `cycle` is a multiple of every period.
   Peak highest(const std::vector<SweepStation>& stations, const std::vector<SweepTerm>& terms, Tick cycle);
 
-  // Stations that together leave no phi with a value above `value`, ascending; empty if some phi has one.
+  // Few stations that together leave no phi with a value above `value`, ascending; empty if some phi has one.
   std::vector<int> blockers(const std::vector<SweepStation>& stations, const std::vector<SweepTerm>& terms, Tick cycle, Tick value);
 
  private:
-  struct Entry {
-    Tick level = 0;  // value + phi, valid for phi before `next`
-    Tick next = 0;   // the next phi at which the station can lift the level above the best so far
-    int station = 0;
+  struct Stair {
+    Tick end = 0;    // phi at which the station steps up; the last stair of each station ends at the cycle
+    Tick level = 0;  // value + phi until then
   };
-  static Entry look(const SweepStation& station, int index, const std::vector<SweepTerm>& terms, Tick phi, Tick best);
-  void build(const std::vector<SweepStation>& stations, const std::vector<SweepTerm>& terms, Tick best);
-  void sink(std::size_t at);
+  struct Step {
+    Tick at = 0, level = 0;
+  };
+  // Appends the station's stairs; false if it has no term.
+  bool add_stairs(const SweepStation& station, const std::vector<SweepTerm>& terms, Tick cycle);
+  Peak highest_by_buckets(Tick cycle);
+  Peak highest_by_sorting(Tick cycle);
+  Peak best_of_some(Tick level, Peak best);
 
-  std::vector<Entry> m_heap;  // lowest level on top
+  std::vector<Stair> m_stairs, m_some;
+  std::vector<Step> m_steps;
+  std::vector<Tick> m_lowest;    // by bucket: the lowest level that ends there; then of all that end there or later
+  std::vector<Tick> m_earliest;  // by bucket: its earliest end
 };
 
 }  // namespace entrain::bands
