@@ -1,11 +1,13 @@
 // Exact bands: a corridor of N stations with P orders each, greens 53 to 70 % of the cycle, uneven spacing, times in tenths.
 #include <benchmark/benchmark.h>
 
+#include <filesystem>
 #include <random>
 
 #include "coordination/bands/compiled.hpp"
 #include "coordination/bands/corridor_bands.hpp"
 #include "coordination/bands/solve.hpp"
+#include "../coordination/bands/milp.hpp"
 
 using namespace entrain::bands;
 
@@ -51,9 +53,22 @@ void solve_whole_seconds(benchmark::State& state) {
   for (auto _ : state) benchmark::DoNotOptimize(solve_two_way_whole_seconds(input));
 }
 
+// The same instance by a general solver, once; the counters let one compare the answers.
+void outside_solver(benchmark::State& state) {
+  const TwoWayInput input = corridor(static_cast<int>(state.range(0)), static_cast<int>(state.range(1)), 7);
+  std::string folder = (std::filesystem::temp_directory_path() / "entrain-bench-XXXXXX").string();
+  if (!milp::is_available() || !::mkdtemp(folder.data())) return state.SkipWithError("cbc is not installed");
+  const std::string program = milp::program(to_problem(input), {1});
+  double share = -1;
+  for (auto _ : state) share = milp::solve(program, folder).value_or(-1);
+  state.counters["share_s"] = share;
+  std::filesystem::remove_all(folder);
+}
+
 }  // namespace
 
 BENCHMARK(widest)->Args({10, 4})->Args({40, 2})->Args({40, 4})->Args({1000, 1})->Args({1000, 4})->Args({100000, 4});
 BENCHMARK(solve)->Args({10, 4})->Args({40, 2})->Args({40, 4})->Args({1000, 1});
 BENCHMARK(solve_whole_seconds)->Args({10, 4})->Args({40, 2})->Args({40, 4})->Args({1000, 1});
+BENCHMARK(outside_solver)->Args({10, 2})->Args({20, 2})->Args({40, 2})->Iterations(1)->Unit(benchmark::kMillisecond)->UseRealTime();
 BENCHMARK_MAIN();

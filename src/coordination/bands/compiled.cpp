@@ -153,8 +153,8 @@ class Compiler {
     m_out.cycle += m_out.cycle % 2;
     for (const Station& station : m_problem.stations) add_station(station);
     for (std::size_t c = 0; c < m_problem.corridors.size(); ++c) add_corridor(c);
-    if (!m_found.empty()) return failure(m_found);
-    return m_out;
+    if (!m_found.empty()) return failure(std::move(m_found));
+    return std::move(m_out);
   }
 
  private:
