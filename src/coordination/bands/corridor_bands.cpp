@@ -351,21 +351,30 @@ std::vector<Placed> CorridorBands::place_one(const CorridorOptimum& optimum) con
   return all;
 }
 
+// Adds stations that leave no place for bands of these widths (there is none).
+void CorridorBands::add_witness(const Widths& widths, bool both, std::vector<int>& found) {
+  for (const CapGroup& group : m_cap_groups)
+    if (group.longest < (group.second ? widths.second : widths.first)) return found.push_back(group.station);
+  for (const Group& group : m_groups) {
+    const bool fits = std::any_of(m_pairs.begin() + group.begin, m_pairs.begin() + group.end, [&](const Pair& p) { return p.g >= widths.first && p.h >= widths.second; });
+    if (!fits) return found.push_back(group.station);
+  }
+  if (!both || !filter(0, widths, 0, 0)) return;
+  for (const int blocker : m_sweep.blockers(m_sweep_stations, m_terms, m_problem.cycle, widths.first + widths.second - 1)) found.push_back(m_owner[static_cast<std::size_t>(blocker)]);
+}
+
 std::vector<int> CorridorBands::witness(const CorridorOptimum& optimum) {
   std::vector<int> found;
   const Widths base = optimum.widths;
-  const Tick total = base.first + base.second;
-  for (const Widths& raised : {Widths{base.first + 1, base.second}, Widths{base.first, base.second + 1}}) {
-    const Tick g = raised.first, h = raised.second;
-    for (const CapGroup& group : m_cap_groups)
-      if (group.longest < (group.second ? h : g)) found.push_back(group.station);
-    for (const Group& group : m_groups) {
-      const bool fits = std::any_of(m_pairs.begin() + group.begin, m_pairs.begin() + group.end, [&](const Pair& p) { return p.g >= g && p.h >= h; });
-      if (!fits) found.push_back(group.station);
-    }
-    if (m_two_way && optimum.all_directions && filter(0, raised, 0, 0))
-      for (const int blocker : m_sweep.blockers(m_sweep_stations, m_terms, m_problem.cycle, total)) found.push_back(m_owner[static_cast<std::size_t>(blocker)]);
+  const bool both = m_two_way && optimum.all_directions;
+  if (both) {
+    const auto& frames = m_problem.corridors[static_cast<std::size_t>(m_corridor)];
+    const double w0 = m_problem.frames[static_cast<std::size_t>(frames[0])].weight, w1 = m_problem.frames[static_cast<std::size_t>(frames[1])].weight;
+    const auto more = [&](double weight) { return weight > 0 ? static_cast<Tick>(std::floor(weight * optimum.share + 0.25)) + 1 : 0; };
+    add_witness({more(w0), more(w1)}, w0 > 0 && w1 > 0, found);
   }
+  if (both || optimum.single == 0) add_witness({base.first + 1, base.second}, both, found);
+  if (both || optimum.single == 1) add_witness({base.first, base.second + 1}, both, found);
   std::sort(found.begin(), found.end());
   found.erase(std::unique(found.begin(), found.end()), found.end());
   return found;

@@ -41,7 +41,7 @@ class CorridorBands {
   Peak room(const Widths& widths);
   // Arcs of the offsets for a first leading edge at 0; by station met, ascending. The widths must fit at phi.
   std::vector<Placed> place(const CorridorOptimum& optimum) const;
-  // Stations that rule out any larger sum of widths.
+  // Stations that alone rule out a larger share, and with the share a larger sum of widths.
   std::vector<int> witness(const CorridorOptimum& optimum);
 
   // Arcs of phi at which bands of these widths fit, in [0, cycle), as closed intervals [from, to], ascending.
@@ -74,6 +74,7 @@ class CorridorBands {
   void add_pairs(int station, const Visit& first, const Visit& second, const std::vector<int>& options);
   void add_caps(int station, const Visit& visit, bool second, const std::vector<int>& options);
   void add_station(int station, const std::vector<int>& options);
+  void add_witness(const Widths& widths, bool both, std::vector<int>& found);
   void prepare_shares();
   bool fits_at(const Widths& widths, Tick phi) const;
   bool best_at_peak(CorridorOptimum& optimum, double first_weight, double second_weight);

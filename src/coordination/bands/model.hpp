@@ -102,7 +102,7 @@ struct CorridorAnswer {
   double share_bound_s = 0;      // no offsets and options give more (in this problem)
   double own_best_share_s = 0;   // alone, without the other corridors
   bool all_directions = true;    // false: not every direction can have a band at once; the widest single one was taken
-  std::vector<int> witness;      // stations that alone rule out any larger total of the two widths
+  std::vector<int> witness;      // stations that alone rule out a larger share, and with this share a larger sum; empty where fixed offsets decide
 };
 
 struct Answer {
