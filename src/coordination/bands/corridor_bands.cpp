@@ -11,6 +11,7 @@ constexpr double infinite = std::numeric_limits<double>::infinity();
 
 // The largest t with base + rate t <= length.
 double limit(Tick length, Tick base, double rate) {
+  if (rate == 1) return static_cast<double>(length - base);
   if (rate > 0) return static_cast<double>(length - base) / rate;
   return length >= base ? infinite : -infinite;
 }

@@ -18,6 +18,8 @@ class WholeSeconds {
     for (const int station : m_met)
       if (m_problem.stations[static_cast<std::size_t>(station)].is_fixed) m_fixed.push_back(station);
     m_shifts = m_fixed.size() < 2;
+    m_order = m_met;  // those that cannot move refuse first
+    std::stable_partition(m_order.begin(), m_order.end(), [&](int s) { return station(s).is_fixed; });
     m_demands.resize(problem.frames.size());
   }
 
@@ -31,7 +33,12 @@ class WholeSeconds {
   void find_fractions(std::size_t direction);
   void keep_if_better(const Widths& widths, bool extended);
   bool fits(const Widths& widths, Active active);
+  std::optional<Placed> fit(int index) {
+    const CompiledStation& s = station(index);
+    return m_fit.fit(s, index, m_options[static_cast<std::size_t>(index)], m_demands, grid_of(index), !m_shifts && s.is_fixed, s.fixed);
+  }
   bool try_edges(Tick first, Tick second);
+  bool fixed_admit(Tick first);
   bool try_first(const Widths& widths, Active active, const std::vector<CorridorBands::PhiArc>& arcs, Tick first);
   Widths achieved(Active active) const;
   Widths raise_share(Active active, double bound);
@@ -46,7 +53,7 @@ class WholeSeconds {
   const std::vector<int>& m_frames;
   const OptionLists& m_options;
   const Alone& m_bound;
-  std::vector<int> m_met, m_fixed;
+  std::vector<int> m_met, m_fixed, m_order;
   bool m_simple, m_shifts = true;
   std::vector<BandDemand> m_demands;
   std::vector<Tick> m_fractions[2];
@@ -74,8 +81,8 @@ bool WholeSeconds::try_edges(Tick first, Tick second) {
   m_demands[static_cast<std::size_t>(m_frames[0])].edge = first;
   if (m_frames.size() > 1) m_demands[static_cast<std::size_t>(m_frames[1])].edge = second;
   m_trial.clear();
-  for (const int index : m_met) {
-    const auto placed = m_fit.fit(station(index), index, m_options[static_cast<std::size_t>(index)], m_demands, grid_of(index), !m_shifts && station(index).is_fixed, station(index).fixed);
+  for (const int index : m_order) {
+    const auto placed = fit(index);
     if (!placed) return false;
     m_trial.push_back(*placed);
   }
@@ -83,8 +90,19 @@ bool WholeSeconds::try_edges(Tick first, Tick second) {
   return true;
 }
 
+// Whether the stations that cannot move admit the first direction's band there, whatever the second does.
+bool WholeSeconds::fixed_admit(Tick first) {
+  BandDemand& second = m_demands[static_cast<std::size_t>(m_frames[1])];
+  m_demands[static_cast<std::size_t>(m_frames[0])].edge = first;
+  second.active = false;
+  const bool admit = std::all_of(m_fixed.begin(), m_fixed.end(), [&](int index) { return fit(index).has_value(); });
+  second.active = true;
+  return admit;
+}
+
 bool WholeSeconds::try_first(const Widths& widths, Active active, const std::vector<CorridorBands::PhiArc>& arcs, Tick first) {
   if (!active.second) return try_edges(first, 0);
+  if (!m_shifts && !fixed_admit(first)) return false;
   for (const auto& arc : arcs)
     for (const Tick fraction : m_fractions[1]) {
       // phi = first - second - width of the second, in [from, to]
@@ -210,6 +228,7 @@ Alone WholeSeconds::finish(const Widths& widths, Active active) {
     placed.length = 0;
     alone.placed.push_back(placed);
   }
+  std::sort(alone.placed.begin(), alone.placed.end(), [](const Placed& a, const Placed& b) { return a.station < b.station; });
   alone.anchored = !m_fixed.empty();
   if (m_fixed.size() == 1) {
     const int index = m_fixed.front();
