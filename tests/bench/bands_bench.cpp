@@ -6,6 +6,7 @@
 
 #include "coordination/bands/compiled.hpp"
 #include "coordination/bands/corridor_bands.hpp"
+#include "coordination/bands/cycle_scan.hpp"
 #include "coordination/bands/solve.hpp"
 #include "../coordination/bands/milp.hpp"
 
@@ -53,6 +54,12 @@ void solve_whole_seconds(benchmark::State& state) {
   for (auto _ : state) benchmark::DoNotOptimize(solve_two_way_whole_seconds(input));
 }
 
+// 201 cycle lengths, windows in proportion.
+void scan(benchmark::State& state) {
+  const TwoWayInput input = corridor(static_cast<int>(state.range(0)), static_cast<int>(state.range(1)), 7);
+  for (auto _ : state) benchmark::DoNotOptimize(scan_cycles(input, {40, 240, 1}));
+}
+
 // The same instance by a general solver, once; the counters let one compare the answers.
 void outside_solver(benchmark::State& state) {
   const TwoWayInput input = corridor(static_cast<int>(state.range(0)), static_cast<int>(state.range(1)), 7);
@@ -70,5 +77,6 @@ void outside_solver(benchmark::State& state) {
 BENCHMARK(widest)->Args({10, 4})->Args({40, 2})->Args({40, 4})->Args({1000, 1})->Args({1000, 4})->Args({100000, 4});
 BENCHMARK(solve)->Args({10, 4})->Args({40, 2})->Args({40, 4})->Args({1000, 1});
 BENCHMARK(solve_whole_seconds)->Args({10, 4})->Args({40, 2})->Args({40, 4})->Args({1000, 1});
+BENCHMARK(scan)->Args({40, 1})->Args({40, 2})->Args({40, 4});
 BENCHMARK(outside_solver)->Args({10, 2})->Args({20, 2})->Args({40, 2})->Iterations(1)->Unit(benchmark::kMillisecond)->UseRealTime();
 BENCHMARK_MAIN();
