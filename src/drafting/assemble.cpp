@@ -88,24 +88,35 @@ plan::Group group_of(std::size_t index, const timing::SignalDesign& design, cons
   return to;
 }
 
+// Rings, sides and groups of "1 2|3 4 / 5 6|7 8"; empty parts are sides at which a ring rests.
+std::vector<std::vector<std::vector<std::string>>> parts_of(const std::string& sequence) {
+  std::vector<std::vector<std::vector<std::string>>> rings{{{}}};
+  std::string word;
+  const auto finish = [&] {
+    if (!word.empty()) rings.back().back().push_back(word);
+    word.clear();
+  };
+  for (const char c : sequence) {
+    if (c != ' ' && c != '|' && c != '/') word += c;
+    else finish();
+    if (c == '|') rings.back().emplace_back();
+    if (c == '/') rings.push_back({{}});
+  }
+  finish();
+  return rings;
+}
+
 void put_controller(const PlannedSignal& planned, const timing::Allocation& order, plan::Signal& to) {
   to.controller.coordinated = planned.coordinated;
-  const auto& design = planned.design;
-  if (!design.ring_barrier) return;
+  if (!planned.design.ring_barrier || order.sequence.empty()) return;
   to.controller.kind = "ring_barrier";
   plan::RingBarrier& rings = to.controller.ring_barrier.emplace();
-  const std::size_t sides = design.ring_barrier->rings.empty() ? 0 : design.ring_barrier->rings[0].size();
-  rings.barriers_after.resize(sides);
-  for (const auto& ring : design.ring_barrier->rings) {
+  for (const auto& ring : parts_of(order.sequence)) {
     auto& sequence = rings.rings.emplace_back();
+    rings.barriers_after.resize(std::max(rings.barriers_after.size(), ring.size()));
     for (std::size_t side = 0; side < ring.size(); ++side) {
-      std::vector<int> groups = ring[side];
-      std::stable_sort(groups.begin(), groups.end(), [&](int a, int b) {
-        const auto start = [&](int g) { const auto& list = order.groups[static_cast<std::size_t>(g)].greens; return list.empty() ? Tenths{0} : list[0].start; };
-        return start(a) < start(b);
-      });
-      for (const int g : groups) sequence.push_back(design.groups[static_cast<std::size_t>(g)].id);
-      if (!groups.empty() && side < sides) rings.barriers_after[side].push_back(sequence.back());
+      sequence.insert(sequence.end(), ring[side].begin(), ring[side].end());
+      if (!ring[side].empty()) rings.barriers_after[side].push_back(ring[side].back());
     }
   }
 }
@@ -166,6 +177,16 @@ plan::Signal signal_of(const Inputs& inputs, const PlannedSignal& planned, const
   return to;
 }
 
+// Rounding rules and allowed yields as numbers, so that the review applies the same.
+void put_rules(const standards::DesignStandard& standard, plan::StandardInUse& to) {
+  for (const auto& [value, rule] : standard.rounding) {
+    const bool second = rule == standards::Rounding::up_to_second, half = rule == standards::Rounding::up_to_half_second;
+    to.values[value + "_rounding_step"] = second ? 1.0 : half ? 0.5 : 0.1;
+    to.values[value + "_rounding_up"] = rule == standards::Rounding::nearest_tenth ? 0 : 1;
+  }
+  for (const auto& [yield, is_allowed] : standard.allowed) to.values["allow_" + yield] = is_allowed ? 1 : 0;
+}
+
 void put_frame(const Inputs& inputs, const Candidate& candidate, plan::Plan& plan) {
   const auto& period = inputs.project.periods[candidate.period];
   plan.program = "entrain " ENTRAIN_VERSION;
@@ -177,6 +198,7 @@ void put_frame(const Inputs& inputs, const Candidate& candidate, plan::Plan& pla
   plan.units = inputs.project.units == project::Units::us ? "us" : "metric";
   plan.standard.id = inputs.standard.id;
   for (const auto& [key, value] : inputs.standard.values) plan.standard.values[key] = value.value;
+  put_rules(inputs.standard, plan.standard);
   plan.cost_model.alpha = inputs.standard.value("dispersion_alpha");
   plan.cost_model.beta = inputs.standard.value("dispersion_beta");
   plan.cost_model.stop_weight_s = inputs.standard.value("stop_weight_s");
