@@ -1,7 +1,10 @@
 // Bands against published values.
 #include <catch2/catch.hpp>
 
+#include <cmath>
+
 #include "coordination/bands/evaluate.hpp"
+#include "coordination/bands/pace_ranges.hpp"
 #include "coordination/bands/solve.hpp"
 
 using namespace entrain::bands;
@@ -87,4 +90,25 @@ TEST_CASE("one-way pair: the queue moves the ideal offset", "[published]") {
 TEST_CASE("alternate systems", "[published]") {
   CHECK(widest_share(artery(60, 44, std::vector<double>(7, 1320), std::vector<double>(8, .5))) == Approx(0.50).margin(1e-9));
   CHECK(widest_share(artery(60, 44, std::vector<double>(7, 660), std::vector<double>(8, .5))) == Approx(0.25).margin(1e-9));
+}
+
+// Little 1966: the ten-signal artery with cycle 55 to 75 s, every speed 44 to 58.6667 ft/s, change of slowness between neighbouring links
+// at most 0.0121 s/m, band ratio 0.9 to 1.1: the two bands together are 0.561818 of the cycle (recomputed by two MILP solvers).
+TEST_CASE("ten-signal artery with free speeds and cycle", "[published]") {
+  PaceInput input;
+  const std::vector<double> spacing_ft = {550, 700, 1100, 700, 800, 650, 400, 700, 450};
+  input.corridor = artery(60, 44, spacing_ft, {.53, .60, .60, .53, .52, .58, .60, .60, .60, .58});
+  for (const double feet : spacing_ft) input.links.push_back({feet * 0.3048, 1 / (176.0 / 3 * 0.3048), 1 / (44 * 0.3048)});
+  input.most_change_s_per_m = 0.0121;
+  const auto answer = solve_pace_ranges(input, {55, 75, 0.25});
+  REQUIRE(answer);
+  const auto& directions = answer->bands.corridors[0].directions;
+  const double sum = (directions[0].width_s + directions[1].width_s) / answer->cycle_s;
+  CHECK(sum == Approx(0.561818).margin(2e-6));
+  CHECK(directions[0].width_s / directions[1].width_s == Approx(1).margin(0.1));
+  for (std::size_t i = 0; i < input.links.size(); ++i) {
+    CHECK(answer->pace_s_per_m[i] >= input.links[i].least_s_per_m - 1e-9);
+    CHECK(answer->pace_s_per_m[i] <= input.links[i].most_s_per_m + 1e-9);
+    if (i > 0) CHECK(std::abs(answer->pace_s_per_m[i] - answer->pace_s_per_m[i - 1]) <= 0.0121 + 1e-9);
+  }
 }

@@ -11,7 +11,7 @@ namespace {
 
 class Writer {
  public:
-  Writer(const Problem& problem, const std::vector<double>& own) : m_problem(problem), m_own(own) {
+  Writer(const Problem& problem, const std::vector<double>& own, const PaceInput* paces = nullptr) : m_problem(problem), m_own(own), m_paces(paces) {
     m_rows << std::setprecision(15);
     m_bounds << std::setprecision(15);
   }
@@ -43,15 +43,33 @@ class Writer {
     const std::string name = std::to_string(c) + "_" + std::to_string(d);
     m_bounds << " 0 <= u_" << name << " <= " << m_problem.cycle_s << "\n 0 <= b_" << name << " <= " << m_problem.cycle_s << "\n";
     if (direction.weight > 0) m_rows << " b_" << name << " - " << direction.weight * m_own[c] << " r >= 0\n";
+    if (m_paces) add_paces(d);
     double travel = 0;
+    std::ostringstream free_travel;
+    free_travel << std::setprecision(15);
     for (std::size_t j = 0; j < direction.stops.size(); ++j) {
-      travel += j > 0 ? direction.stops[j].travel_s : 0;
-      add_stop(direction.stops[j], name, name + "_" + std::to_string(j), travel);
+      travel += j > 0 && !m_paces ? direction.stops[j].travel_s : 0;
+      if (m_paces && j > 0) {
+        const std::size_t link = d == 0 ? j - 1 : direction.stops.size() - 1 - j;
+        free_travel << " - " << m_paces->links[link].length_m << " " << pace(d, link);
+      }
+      add_stop(direction.stops[j], name, name + "_" + std::to_string(j), travel, free_travel.str());
+    }
+  }
+
+  static std::string pace(std::size_t direction, std::size_t link) { return "p_" + std::to_string(direction) + "_" + std::to_string(link); }
+
+  void add_paces(std::size_t d) {
+    for (std::size_t i = 0; i < m_paces->links.size(); ++i) {
+      m_bounds << " " << m_paces->links[i].least_s_per_m << " <= " << pace(d, i) << " <= " << m_paces->links[i].most_s_per_m << "\n";
+      if (i == 0) continue;
+      m_rows << " " << pace(d, i) << " - " << pace(d, i - 1) << " <= " << m_paces->most_change_s_per_m << "\n";
+      m_rows << " " << pace(d, i - 1) << " - " << pace(d, i) << " <= " << m_paces->most_change_s_per_m << "\n";
     }
   }
 
   // y = u - x + travel - start + n period, 0 <= y <= duration - b, start and duration by the window chosen.
-  void add_stop(const Stop& stop, const std::string& direction, const std::string& name, double travel) {
+  void add_stop(const Stop& stop, const std::string& direction, const std::string& name, double travel, const std::string& free_travel) {
     const auto s = static_cast<std::size_t>(stop.station);
     std::ostringstream start, duration;
     start << std::setprecision(15);
@@ -73,18 +91,26 @@ class Writer {
     }
     m_bounds << " -100000 <= n_" << name << " <= 100000\n";
     m_generals << " n_" << name << "\n";
-    m_rows << " y_" << name << " - u_" << direction << " + x_" << s << start.str() << " - " << period(s) << " n_" << name << " = " << travel << "\n";
+    m_rows << " y_" << name << " - u_" << direction << " + x_" << s << start.str() << free_travel << " - " << period(s) << " n_" << name << " = " << travel << "\n";
     m_rows << " y_" << name << " + b_" << direction << duration.str() << " <= 0\n";
   }
 
   const Problem& m_problem;
   const std::vector<double>& m_own;
+  const PaceInput* m_paces;
   std::ostringstream m_rows, m_bounds, m_generals, m_binaries;
 };
 
 }  // namespace
 
 std::string program(const Problem& problem, const std::vector<double>& own_best_s) { return Writer(problem, own_best_s).run(); }
+
+std::string program(const PaceInput& input) {
+  TwoWayInput corridor = input.corridor;
+  corridor.forward_travel_s.assign(input.links.size(), 0.0);
+  corridor.backward_travel_s = corridor.forward_travel_s;
+  return Writer(to_problem(corridor), {1}, &input).run();
+}
 
 bool is_available() { return std::system("cbc -quit >/dev/null 2>&1 </dev/null") == 0; }
 
