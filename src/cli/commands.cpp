@@ -10,7 +10,7 @@ const std::vector<Command>& commands() {
       {"review", "Re-check a plan's safety and claims by other code than made it", declare_review},
       // {"compare", "A complete plan for each cycle length, side by side", declare_compare},
       // {"sheet", "Timing sheets, diagrams and a page from plans", declare_sheet},
-      // {"offsets", "For experts: the bare offset engine on a problem file", declare_offsets},
+      {"offsets", "For experts: the bare offset engine on a problem file", declare_offsets},
   };
   return list;
 }

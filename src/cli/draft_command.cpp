@@ -77,6 +77,7 @@ Diagnostics write_plans(const drafting::Draft& draft, const std::string& output)
     const std::string folder = output + "/" + row.plan.period;
     append(problems, write_whole_file(folder + "/plan.json", plan::write_plan(row.plan)));
     if (!row.certificate.empty()) append(problems, write_whole_file(folder + "/plan.cert", row.certificate));
+    if (!row.problem.empty()) append(problems, write_whole_file(folder + "/plan.offsets", row.problem));
   }
   return problems;
 }

@@ -2,6 +2,7 @@
 #include <fmt/format.h>
 
 #include "cli/command.hpp"
+#include "cli/offsets_command.hpp"
 #include "plan/plan_text.hpp"
 #include "review/review.hpp"
 #include "review/review_text.hpp"
@@ -11,7 +12,7 @@ namespace {
 
 struct ReviewCommand {
   std::vector<std::string> plans;
-  std::string output;
+  std::string output, certificate;
   bool recompute = false, require_safety = false;
 };
 
@@ -43,6 +44,7 @@ int recompute(const ReviewCommand& command, std::vector<Reviewed>& plans) {
 }
 
 int run_review(const ReviewCommand& command, const CommonOptions& common) {
+  if (!command.certificate.empty()) return review_certificate(command.plans[0], command.certificate, common);
   std::vector<Reviewed> reviewed;
   const Diagnostics problems = read_plans(command.plans, reviewed);
   if (!problems.empty()) return fail(problems);
@@ -65,6 +67,7 @@ int run_review(const ReviewCommand& command, const CommonOptions& common) {
 std::function<int()> declare_review(CLI::App& app, const CommonOptions& common) {
   auto command = std::make_shared<ReviewCommand>();
   app.add_option("plan", command->plans, "plan.json, one or several periods of a project")->required();
+  app.add_option("--certificate", command->certificate, "Check this proof (*.cert) of an offset problem (*.offsets) named instead of a plan");
   app.add_flag("--require-safety", command->require_safety, "Anything but a safety verdict of 'checked' is a violation");
   app.add_flag("--recompute", command->recompute, "Refresh the claims of an edited plan and write it to -o; safety findings stay findings");
   app.add_option("-o,--output", command->output, "Where --recompute writes the plan");

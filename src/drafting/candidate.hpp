@@ -36,7 +36,7 @@ struct Coordination {
   std::vector<std::optional<std::pair<double, double>>> freedom_s;  // by signal: (earlier, later) with the bands as they are
   double delay_cost = 0, delay_bound = 0;          // of the constrained delay problem, in the cost model's units
   bool has_delay_cost = false;
-  std::string certificate;                         // text of the proof; empty: none
+  std::string certificate, problem;                // texts of the proof and of what it is about; empty: none
   std::vector<std::string> remarks;
 };
 

@@ -66,6 +66,9 @@ bool draft_period(Drafting& work, std::size_t period, Draft& draft, Diagnostics&
     append(problems, clashes_of(sweep, "period " + id));
     return false;
   }
+  CoordinateOptions full = work.options.coordinate;
+  full.want_certificate = true;
+  finish_row(work.inputs, work.local, period, full, sweep.recommended, sweep);
   CyclePlan& chosen = sweep.rows[static_cast<std::size_t>(sweep.recommended)];
   chosen.plan.cycle_reason = sweep.reason;
   add_assumptions(work.inputs, work.local, work.notes, chosen.plan);

@@ -94,10 +94,11 @@ void minimise_delay(const Inputs& inputs, const LocalTiming& local, const Candid
   if (build.search.edges.empty()) return;
   if (best != nullptr && options.keep_band > 0) add_bands(*best, options.keep_band, out, build);
   const OffsetSearchAnswer answer = search_offsets(build.search, options);
-  out.has_delay_cost = true;
+  out.has_delay_cost = answer.solved;
   out.delay_cost = static_cast<double>(answer.value);
   out.delay_bound = static_cast<double>(answer.bound);
   out.certificate = answer.certificate;
+  out.problem = answer.problem;
   for (std::size_t s = 0; s < local.signals.size(); ++s)
     if (build.node_of_signal[s] >= 0) out.offset_s[s] = answer.labels[static_cast<std::size_t>(build.node_of_signal[s])] % candidate.signals[s].cycle_s;
 }

@@ -82,6 +82,16 @@ void settle_reference(PlannedSignal& planned) {
     if (!planned.coordinated.empty() && design.groups[g].id == planned.coordinated.front()) design.reference_group = static_cast<int>(g);
 }
 
+// Without a signals table a project that names corridors plans their signals and no others.
+bool is_planned(const Inputs& inputs, int signal) {
+  if (!inputs.tables.signals.empty() || inputs.network.corridors.empty()) return true;
+  for (const auto& corridor : inputs.network.corridors)
+    for (const auto& direction : corridor.directions)
+      for (const auto& stop : direction.stops)
+        if (stop.signal == signal) return true;
+  return false;
+}
+
 struct Collected {
   Diagnostics problems, notes;
 };
@@ -150,11 +160,15 @@ Result<Noted<LocalTiming>> local_timing(const Inputs& inputs) {
   local.planned_of_network.assign(inputs.network.signals.size(), -1);
   read_demands(inputs, local, collected);
   if (!collected.problems.empty()) return failure(collected.problems);
+  int elsewhere = 0;
   for (std::size_t s = 0; s < inputs.network.signals.size(); ++s) {
     const network::Signal& signal = inputs.network.signals[s];
-    if (signal.pedestrian_only) collected.notes.push_back(note(signal.id, "a signal for pedestrians only: not planned"));
+    if (!is_planned(inputs, static_cast<int>(s))) ++elsewhere;
+    else if (signal.pedestrian_only) collected.notes.push_back(note(signal.id, "a signal for pedestrians only: not planned"));
     else design_one(inputs, s, local, collected);
   }
+  if (elsewhere > 0)
+    collected.notes.push_back(note("roads", fmt::format("{} signals lie on no corridor and were not planned; name them in a signals table to plan them too", elsewhere)));
   if (!collected.problems.empty()) return failure(collected.problems);
   return Noted<LocalTiming>{std::move(local), std::move(collected.notes)};
 }

@@ -26,7 +26,8 @@ struct OffsetSearch {
 struct OffsetSearchAnswer {
   std::vector<int> labels;
   std::int64_t value = 0, bound = 0;
-  std::string certificate;  // text of the proof; empty: the bound is the sum of the edges' least costs
+  bool solved = false;               // false: the start stands, nothing is proved
+  std::string certificate, problem;  // texts of the proof and of what it is about; empty unless asked for
 };
 
 // Never worse than the start.

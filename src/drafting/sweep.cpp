@@ -17,6 +17,7 @@
 namespace entrain::drafting {
 namespace {
 
+constexpr double sweep_effort = 0.25;  // of the search for one plan, where cycles are only compared
 constexpr double near_share = 0.03;  // scores this close are told apart by their bands
 
 void rate(CyclePlan& row) {
@@ -136,6 +137,7 @@ CyclePlan complete_plan(const Inputs& inputs, const LocalTiming& local, const Ca
   row.plan = assemble(inputs, local, candidate, coordination);
   put_running(inputs, local, candidate.period, row.plan);
   row.certificate = coordination.certificate;
+  row.problem = coordination.problem;
   if (coordination.has_delay_cost) {
     const double value = coordination.delay_cost, bound = coordination.delay_bound;
     const std::string objective = corridors.empty() || options.keep_band <= 0 ? "delay" : "band, then delay";
@@ -158,6 +160,8 @@ Sweep sweep_cycles(const Inputs& inputs, const LocalTiming& local, std::size_t p
   for_each_index(cycles.size(), options.threads, [&](std::size_t i) {
     CoordinateOptions single = options;
     single.threads = 1;
+    single.effort = options.effort * sweep_effort;
+    single.want_certificate = false;
     sweep.rows[i] = plan_cycle(inputs, local, period, cycles[i], single);
     const std::lock_guard<std::mutex> lock(told);
     if (progress) progress(++finished, static_cast<int>(cycles.size()));
@@ -171,6 +175,12 @@ Sweep sweep_cycles(const Inputs& inputs, const LocalTiming& local, std::size_t p
     sweep.reason = sweep.rows.empty() ? "no cycle length was asked for" : "no cycle length fits: " + labels_of(sweep.rows.back().why_not);
   }
   return sweep;
+}
+
+void finish_row(const Inputs& inputs, const LocalTiming& local, std::size_t period, const CoordinateOptions& options, int index, Sweep& sweep) {
+  CyclePlan& row = sweep.rows[static_cast<std::size_t>(index)];
+  row = plan_cycle(inputs, local, period, row.cycle_s, options);
+  if (index == sweep.recommended) sweep.reason = reason_of(sweep, inputs.standard.value("target_saturation"), critical_text(inputs, local, period));
 }
 
 }  // namespace entrain::drafting

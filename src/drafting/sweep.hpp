@@ -17,6 +17,7 @@ struct CoordinateOptions {
   unsigned seed = 1;
   int threads = 1;
   double effort = 1.0;     // share of the usual search effort
+  bool want_certificate = false;
 };
 
 struct CyclePlan {
@@ -28,7 +29,7 @@ struct CyclePlan {
   double score_s = 0;                // delay plus weighted stops, seconds a vehicle
   double band_efficiency = 0;        // mean over the corridors' directions
   bool two_way = true;               // every direction with a positive weight has a band
-  std::string certificate;
+  std::string certificate, problem;  // texts; only where CoordinateOptions::want_certificate
 };
 
 struct Sweep {
@@ -41,6 +42,9 @@ struct Sweep {
 // `progress` is called with (done, all) after each cycle; may be empty.
 Sweep sweep_cycles(const Inputs& inputs, const LocalTiming& local, std::size_t period, const std::vector<int>& cycles, const CoordinateOptions& options,
                    const std::function<void(int, int)>& progress);
+
+// Plans one cycle with full effort and its certificate, in place of the row of the sweep, and says the reason anew.
+void finish_row(const Inputs& inputs, const LocalTiming& local, std::size_t period, const CoordinateOptions& options, int index, Sweep& sweep);
 
 // One complete plan from greens: coordinate, assemble, evaluate.
 CyclePlan complete_plan(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, const CoordinateOptions& options);
