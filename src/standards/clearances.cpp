@@ -17,9 +17,33 @@ double braking_mps2(const DesignStandard& standard, double grade) {
   return std::max(0.3, standard.value("deceleration_mps2") + gravity_mps2 * std::clamp(grade, -0.25, 0.25));
 }
 
+double within_yellow_limits(const DesignStandard& standard, double seconds) {
+  return std::clamp(seconds, standard.value("yellow_min_s"), std::max(standard.value("yellow_min_s"), standard.value("yellow_max_s")));
+}
+
+// What the practice's table asks at that speed, 0 without a table. Speeds printed with three digits count as the step's.
+double step_yellow_s(const DesignStandard& standard, double speed_mps) {
+  for (const YellowStep& step : standard.yellow_steps)
+    if (speed_mps <= step.up_to_mps + 1e-3) return step.yellow_s;
+  return standard.yellow_steps.empty() ? 0 : standard.yellow_steps.back().yellow_s;
+}
+
+double wanted_yellow_s(const DesignStandard& standard, double speed_mps, double grade) {
+  return std::max(kinematic_yellow_s(standard, speed_mps, grade), step_yellow_s(standard, speed_mps));
+}
+
+// Before rounding. The slower of the two speeds where the practice states one.
+double wanted_red_s(const DesignStandard& standard, double width_m, double speed_mps) {
+  const auto stated = standard.values.find("clearing_speed_mps");
+  const double speed = std::max(1.0, stated == standard.values.end() ? speed_mps : std::min(speed_mps, stated->second.value));
+  const double computed = (std::max(0.0, width_m) + standard.value("vehicle_length_m")) / speed - standard.value("red_clearance_reduction_s");
+  return std::max(computed, standard.value("red_clearance_min_s"));
+}
+
 }  // namespace
 
 Tenths round_by(Rounding rounding, double seconds) {
+  seconds = std::isfinite(seconds) ? std::clamp(seconds, -1e6, 1e6) : 0;
   const auto up = [&](double step) { return Tenths::nearest(std::ceil(seconds / step - 1e-9) * step); };
   switch (rounding) {
     case Rounding::up_to_second: return up(1.0);
@@ -39,13 +63,33 @@ double turning_yellow_s(const DesignStandard& standard, double approach_speed_mp
 }
 
 Tenths yellow_change(const DesignStandard& standard, double speed_mps, double grade) {
-  const double limited = std::clamp(kinematic_yellow_s(standard, speed_mps, grade), standard.value("yellow_min_s"), standard.value("yellow_max_s"));
-  return round_by(rule(standard, "yellow_s"), limited);
+  return round_by(rule(standard, "yellow_s"), within_yellow_limits(standard, wanted_yellow_s(standard, speed_mps, grade)));
 }
 
-Tenths red_clearance(const DesignStandard& standard, double width_m, double speed_mps) {
-  const double computed = (width_m + standard.value("vehicle_length_m")) / std::max(1.0, speed_mps) - standard.value("red_clearance_reduction_s");
-  return round_by(rule(standard, "red_clearance_s"), std::clamp(computed, standard.value("red_clearance_min_s"), standard.value("red_clearance_max_s")));
+Tenths turning_yellow(const DesignStandard& standard, double approach_speed_mps, double entry_speed_mps, double grade) {
+  return round_by(rule(standard, "yellow_s"), within_yellow_limits(standard, turning_yellow_s(standard, approach_speed_mps, entry_speed_mps, grade)));
+}
+
+Tenths red_clearance(const DesignStandard& standard, double width_m, double speed_mps) { return round_by(rule(standard, "red_clearance_s"), wanted_red_s(standard, width_m, speed_mps)); }
+
+ChangeInterval change_interval(const DesignStandard& standard, double speed_mps, double clearing_speed_mps, double grade, double width_m) {
+  const double wanted = wanted_yellow_s(standard, speed_mps, grade), most = std::max(standard.value("yellow_min_s"), standard.value("yellow_max_s"));
+  ChangeInterval interval;
+  interval.yellow = yellow_change(standard, speed_mps, grade);
+  interval.yellow_cut = wanted > most + 1e-9;
+  const double red = wanted_red_s(standard, width_m, clearing_speed_mps) + std::max(0.0, wanted - most);
+  interval.red_clearance = round_by(rule(standard, "red_clearance_s"), red);
+  interval.red_above_maximum = interval.red_clearance.seconds() > standard.value("red_clearance_max_s") + 1e-9;
+  return interval;
+}
+
+std::optional<Tenths> clearing_entering_intergreen(const DesignStandard& standard, const std::string& clearing, double clearing_distance_m, const std::string& entering,
+                                                   double entering_distance_m) {
+  const auto leaves = standard.clearing.find(clearing), comes = standard.clearing.find(entering);
+  if (leaves == standard.clearing.end() || comes == standard.clearing.end()) return std::nullopt;
+  const ClearingKind& out = leaves->second;
+  const double seconds = out.passing_s + (std::max(0.0, clearing_distance_m) + out.length_m) / out.clearing_mps - std::max(0.0, entering_distance_m) / comes->second.entering_mps;
+  return round_by(Rounding::up_to_second, std::max(0.0, seconds));
 }
 
 PedestrianTimes pedestrian_times(const DesignStandard& standard, double length_m, std::optional<double> button_distance_m, std::optional<double> walking_speed_mps) {
