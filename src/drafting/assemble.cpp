@@ -168,7 +168,8 @@ plan::Signal signal_of(const Inputs& inputs, const PlannedSignal& planned, const
   for (std::size_t g = 0; g < design.groups.size(); ++g) to.groups.push_back(group_of(g, design, greens, order, vehicle_length_m));
   for (const auto& c : design.conflicts)
     to.conflicts.push_back({design.groups[static_cast<std::size_t>(c.a)].id, design.groups[static_cast<std::size_t>(c.b)].id, c.intergreen_ab.seconds(), c.intergreen_ba.seconds()});
-  to.evidence = evidence_of(greens.critical, design);
+  to.conflicts_given = planned.conflicts_given;
+  if (greens.critical.minimum_s > 0) to.evidence = evidence_of(greens.critical, design);
   put_oversaturation(greens, order, design, to);
   to.clock = planned.clock;
   to.offset_fixed = planned.offset_fixed;

@@ -63,7 +63,7 @@ void claim(const BandProblem& bands, const bands::Answer& best, const std::vecto
       to.bandwidth_s = from.width_s;
       to.start_s = from.start_s;
       to.least_green_s = from.least_window_s;
-      to.bound_s = std::max(best.corridors[c].directions[d].bound_s, from.width_s);
+      to.bound_s = best.corridors.empty() ? from.width_s : std::max(best.corridors[c].directions[d].bound_s, from.width_s);
     }
   for (std::size_t i = 0; i < bands.signal_of_station.size(); ++i)
     out.freedom_s[static_cast<std::size_t>(bands.signal_of_station[i])] = {achieved->stations[i].early_s, achieved->stations[i].late_s};
@@ -84,6 +84,11 @@ void remark_bands(const BandProblem& bands, const bands::Answer& best, const std
 }
 
 }  // namespace
+
+void claim_running_bands(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, const std::vector<plan::Corridor>& corridors, Coordination& running) {
+  const BandProblem bands = band_problem(inputs, local, candidate, corridors);
+  if (!bands.problem.corridors.empty()) claim(bands, {}, corridors, running);
+}
 
 Coordination coordinate(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, const std::vector<plan::Link>& links,
                         const std::vector<plan::Corridor>& corridors, const CoordinateOptions& options) {

@@ -13,4 +13,7 @@ namespace entrain::drafting {
 Coordination coordinate(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, const std::vector<plan::Link>& links,
                         const std::vector<plan::Corridor>& corridors, const CoordinateOptions& options);
 
+// Sets the bands and freedoms that the given orders and offsets have; the bound is the band itself.
+void claim_running_bands(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, const std::vector<plan::Corridor>& corridors, Coordination& running);
+
 }  // namespace entrain::drafting

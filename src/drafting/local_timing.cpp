@@ -118,14 +118,22 @@ void design_one(const Inputs& inputs, std::size_t s, LocalTiming& local, Collect
   PlannedSignal planned;
   planned.network_signal = static_cast<int>(s);
   planned.design = std::move(design->value);
-  if (const auto* row = row_of(inputs, signal.id)) apply_row(*row, planned);
-  add_coordinated(inputs, planned);
-  settle_reference(planned);
+  apply_signal_row(inputs, signal.id, planned);
+  settle_coordinated(inputs, planned);
   local.planned_of_network[s] = static_cast<int>(local.signals.size());
   local.signals.push_back(std::move(planned));
 }
 
 }  // namespace
+
+void settle_coordinated(const Inputs& inputs, PlannedSignal& planned) {
+  add_coordinated(inputs, planned);
+  settle_reference(planned);
+}
+
+void apply_signal_row(const Inputs& inputs, const std::string& signal, PlannedSignal& planned) {
+  if (const auto* row = row_of(inputs, signal)) apply_row(*row, planned);
+}
 
 int serving_group(const timing::SignalDesign& design, const std::string& movement) {
   int permissive = -1;

@@ -23,6 +23,7 @@ struct PlannedSignal {
   std::string half_cycle = "never";  // never | allowed | required
   int minimum_cycle_s = 1, maximum_cycle_s = 3600;
   bool offset_fixed = false, sequence_fixed = false, splits_fixed = false;
+  bool conflicts_given = false;      // the conflicts table, not geometry
   std::vector<std::string> coordinated;  // group ids that serve corridors, first the reference
 };
 
@@ -34,6 +35,11 @@ struct LocalTiming {
 
 // Errors: those of design_flows and design_signal, all signals at once.
 [[nodiscard]] Result<Noted<LocalTiming>> local_timing(const Inputs& inputs);
+
+// Groups of the corridors at that signal, in order; the first becomes the reference group. Without corridors the design's own stays.
+void settle_coordinated(const Inputs& inputs, PlannedSignal& planned);
+// What the signals table says about one signal.
+void apply_signal_row(const Inputs& inputs, const std::string& signal, PlannedSignal& planned);
 
 // The group that serves the movement, with protection where there is one; -1: none.
 int serving_group(const timing::SignalDesign& design, const std::string& movement);

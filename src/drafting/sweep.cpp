@@ -127,28 +127,41 @@ void for_each_index(std::size_t n, int threads, Work work) {
 
 }  // namespace
 
-CyclePlan complete_plan(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, const CoordinateOptions& options) {
+namespace {
+
+CyclePlan rated_plan(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, const Coordination& coordination) {
   CyclePlan row;
   row.cycle_s = candidate.cycle_s;
   row.fits = true;
-  const auto links = plan_links(inputs, local, candidate.period);
-  const auto corridors = plan_corridors(inputs, local, candidate.period);
-  const Coordination coordination = coordinate(inputs, local, candidate, links, corridors, options);
   row.plan = assemble(inputs, local, candidate, coordination);
   put_running(inputs, local, candidate.period, row.plan);
-  row.certificate = coordination.certificate;
-  row.problem = coordination.problem;
-  if (coordination.has_delay_cost) {
-    const double value = coordination.delay_cost, bound = coordination.delay_bound;
-    const std::string objective = corridors.empty() || options.keep_band <= 0 ? "delay" : "band, then delay";
-    row.plan.quality = plan::Quality{objective, value, bound, bound > 0 ? (value - bound) / bound : (value > 0 ? 1.0 : 0.0), {}};
-    if (!coordination.certificate.empty()) row.plan.quality->certificate = "plan.cert";
-  }
   row.evaluation = evaluation::evaluate(row.plan);
   for (const std::string& remark : coordination.remarks) row.plan.assumptions.push_back(remark);
   claim_measures(row);
   rate(row);
   return row;
+}
+
+}  // namespace
+
+CyclePlan complete_plan(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, const CoordinateOptions& options) {
+  const auto links = plan_links(inputs, local, candidate.period);
+  const auto corridors = plan_corridors(inputs, local, candidate.period);
+  const Coordination coordination = coordinate(inputs, local, candidate, links, corridors, options);
+  CyclePlan row = rated_plan(inputs, local, candidate, coordination);
+  row.certificate = coordination.certificate;
+  row.problem = coordination.problem;
+  if (!coordination.has_delay_cost) return row;
+  const double value = coordination.delay_cost, bound = coordination.delay_bound;
+  const std::string objective = corridors.empty() || options.keep_band <= 0 ? "delay" : "band, then delay";
+  row.plan.quality = plan::Quality{objective, value, bound, bound > 0 ? (value - bound) / bound : (value > 0 ? 1.0 : 0.0), {}};
+  if (!coordination.certificate.empty()) row.plan.quality->certificate = "plan.cert";
+  return row;
+}
+
+CyclePlan complete_plan_as_it_runs(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, Coordination running) {
+  claim_running_bands(inputs, local, candidate, plan_corridors(inputs, local, candidate.period), running);
+  return rated_plan(inputs, local, candidate, running);
 }
 
 Sweep sweep_cycles(const Inputs& inputs, const LocalTiming& local, std::size_t period, const std::vector<int>& cycles, const CoordinateOptions& options,

@@ -49,4 +49,7 @@ void finish_row(const Inputs& inputs, const LocalTiming& local, std::size_t peri
 // One complete plan from greens: coordinate, assemble, evaluate.
 CyclePlan complete_plan(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, const CoordinateOptions& options);
 
+// The same with orders and offsets as given: bands are claimed as they are, nothing is chosen.
+CyclePlan complete_plan_as_it_runs(const Inputs& inputs, const LocalTiming& local, const Candidate& candidate, Coordination running);
+
 }  // namespace entrain::drafting
