@@ -51,6 +51,34 @@ bool ArcNetwork::any_candidate(State& state, const Relation& relation) const {
   });
 }
 
+// The longest stretch that one arc leaves within the state's bounds.
+Tick ArcNetwork::play(State& state, const Relation& relation) const {
+  bool whole = false;
+  Tick longest = -1;
+  const Tick low = -at(state, relation.b, relation.a), high = at(state, relation.a, relation.b);
+  for (const Bound& bound : candidates(state, relation, whole)) longest = std::max(longest, std::min(high, bound.high) - std::max(low, bound.low));
+  return longest;
+}
+
+// Ways that leave most play come first: where a placement exists, they find one soonest.
+void ArcNetwork::sort_branch(State& state, Branch& branch) const {
+  const auto choice = static_cast<std::size_t>(branch.choice);
+  std::vector<std::pair<Tick, int>> order;
+  for (const int alternative : branch.alternatives) {
+    Tick least = m_spans.empty() ? 0 : at(state, 0, 0) + (Tick{1} << 60);
+    for (const Relation& relation : m_choices[choice].alternatives[static_cast<std::size_t>(alternative)]) least = std::min(least, play(state, relation));
+    order.push_back({-least, alternative});
+  }
+  std::sort(order.begin(), order.end());
+  for (std::size_t i = 0; i < order.size(); ++i) branch.alternatives[i] = order[i].second;
+  if (branch.bounds.empty()) return;
+  const Relation& relation = m_choices[choice].alternatives[static_cast<std::size_t>(state.taken[choice])][static_cast<std::size_t>(branch.relation)];
+  const Tick low = -at(state, relation.b, relation.a), high = at(state, relation.a, relation.b);
+  std::stable_sort(branch.bounds.begin(), branch.bounds.end(), [&](const Bound& a, const Bound& b) {
+    return std::min(high, a.high) - std::max(low, a.low) > std::min(high, b.high) - std::max(low, b.low);
+  });
+}
+
 bool ArcNetwork::settle_choice(State& state, std::size_t index, Branch& branch, bool& changed) const {
   const Choice& choice = m_choices[index];
   std::vector<int> open;
@@ -113,6 +141,7 @@ Verdict ArcNetwork::descend(State state, std::int64_t& nodes) {
     case Step::done: finish(state); return Verdict::fits;
     case Step::branched: break;
   }
+  sort_branch(state, branch);
   const auto choice = static_cast<std::size_t>(branch.choice);
   for (const int alternative : branch.alternatives) {
     State next = state;

@@ -57,6 +57,8 @@ class ArcNetwork {
   struct Branch { int choice = -1, relation = -1; std::vector<int> alternatives; std::vector<Bound> bounds; };
   // Takes every forced decision; then `branch` holds the open decision with the fewest ways on.
   Step propagate(State& state, Branch& branch) const;
+  Tick play(State& state, const Relation& relation) const;
+  void sort_branch(State& state, Branch& branch) const;
   bool settle_choice(State& state, std::size_t index, Branch& branch, bool& changed) const;
   bool settle_relations(State& state, std::size_t index, Branch& branch, bool& changed) const;
   Verdict descend(State state, std::int64_t& nodes);

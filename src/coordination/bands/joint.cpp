@@ -138,19 +138,28 @@ class Solver {
   }
 
   void solve_rings(const std::vector<int>& corridors) {
-    const RingAnswer ring = solve_ring(m_problem, corridors, m_out.own, m_most_nodes);
+    // Whole seconds where the cycle allows them, else an even number of steps a cycle.
+    const bool seconds = m_problem.cycle % (2 * ticks_per_second) == 0;
+    const Setting known = search_ring(m_problem, corridors, m_out.own, m_out.setting, seconds ? ticks_per_second : m_problem.cycle / 120);
+    const RingAnswer ring = solve_ring(m_problem, corridors, m_out.own, known, m_most_nodes);
     m_out.proved = m_out.proved && ring.proved;
     m_out.least_ratio_bound = std::min(m_out.least_ratio_bound, ring.least_ratio_bound);
+    m_out.setting = known;
     for (const Placed& p : place_all(m_problem, ring.demands, allowed_options(m_problem))) {
       m_out.setting.options[static_cast<std::size_t>(p.station)] = p.option;
       m_out.setting.offsets[static_cast<std::size_t>(p.station)] = middle(p);
     }
-    for (const int c : corridors) {
+    for (const int c : corridors) {  // unproved: what each has alone stays the bound
+      if (!ring.proved) break;
       const auto& frames = m_problem.corridors[static_cast<std::size_t>(c)];
       m_out.bound[static_cast<std::size_t>(c)] = {ring.demands[static_cast<std::size_t>(frames[0])].width,
                                                   frames.size() > 1 ? ring.demands[static_cast<std::size_t>(frames[1])].width : 0};
     }
-    if (m_whole_seconds) round_ring(m_problem, corridors, m_out.own, m_out.setting);
+    if (!m_whole_seconds) return;
+    m_out.setting = round_ring(m_problem, corridors, m_out.own, m_out.setting);
+    const Setting other = round_ring(m_problem, corridors, m_out.own, known);
+    const auto worth = [&](const Setting& setting) { return worth_of(m_problem, corridors, m_out.own, measure_all(m_problem, setting)); };
+    if (worth(m_out.setting) < worth(other)) m_out.setting = other;
   }
 
   // Where nothing is fixed, the first station of the first corridor's first direction starts the clock.

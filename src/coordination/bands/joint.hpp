@@ -37,9 +37,23 @@ struct RingAnswer {
   double least_ratio_bound = 1;
   bool proved = true;
 };
-RingAnswer solve_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, std::int64_t most_nodes);
-// Whole seconds near a continuous setting, improved station by station.
-void round_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, Setting& setting);
+// `known`: a setting to start from and never to fall behind.
+RingAnswer solve_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const Setting& known, std::int64_t most_nodes);
+
+// Sorted ratios of the corridors, then the sum of all widths: larger is better.
+struct Worth {
+  std::vector<double> ratios;
+  Tick total = 0;
+  bool operator<(const Worth& other) const;
+};
+// Ratio of each corridor, in the order of the list: share of own best, or the single direction's width of its own.
+std::vector<double> ratios_of(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const std::vector<FrameBand>& bands);
+
+// Local search over offsets (multiples of `step`; fixed ones stay) and options, from one start a corridor: its own best, the others glued on.
+Setting search_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const Setting& base, Tick step);
+// The same from a given setting, rounded to whole seconds first.
+Setting round_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, Setting setting);
+Worth worth_of(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const std::vector<FrameBand>& bands);
 
 // Share of own best, 1 where the corridor has none alone.
 double ratio_of(double share, const Alone& own);

@@ -3,7 +3,6 @@
 #include <algorithm>
 #include <limits>
 
-#include "coordination/bands/sweep.hpp"
 
 namespace entrain::bands {
 namespace {
@@ -128,23 +127,24 @@ class Describer {
 
 }  // namespace
 
-FrameBand measure(const Compiled& problem, int frame, const Setting& setting) {
-  std::vector<SweepStation> stations;
-  std::vector<SweepTerm> terms;
+FrameBand Measure::operator()(const Compiled& problem, int frame, const Setting& setting) {
+  m_stations.clear();
+  m_terms.clear();
   for (const StopKey& stop : problem.frames[static_cast<std::size_t>(frame)].stops) {
     const Tick period = problem.stations[static_cast<std::size_t>(stop.station)].period;
     const std::vector<Slot>& slots = slots_of(problem, stop, setting);
     if (slots.empty()) return {};
     if (slots.front().open) continue;
-    const int begin = static_cast<int>(terms.size());
-    for (const Slot& slot : slots) terms.push_back({wrap(-opening(problem, stop, slot, setting), period), slot.duration});
-    stations.push_back({period, begin, static_cast<int>(terms.size())});
+    const int begin = static_cast<int>(m_terms.size());
+    for (const Slot& slot : slots) m_terms.push_back({wrap(-opening(problem, stop, slot, setting), period), slot.duration});
+    m_stations.push_back({period, begin, static_cast<int>(m_terms.size())});
   }
-  Sweep sweep;
-  const Peak peak = sweep.highest(stations, terms, problem.cycle);
+  const Peak peak = m_sweep.highest(m_stations, m_terms, problem.cycle);
   if (peak.value <= 0) return {};
   return {std::min(peak.value, problem.cycle), peak.phi};
 }
+
+FrameBand measure(const Compiled& problem, int frame, const Setting& setting) { return Measure()(problem, frame, setting); }
 
 std::vector<FrameBand> measure_all(const Compiled& problem, const Setting& setting) {
   std::vector<FrameBand> bands;

@@ -4,6 +4,7 @@
 #include <vector>
 
 #include "coordination/bands/compiled.hpp"
+#include "coordination/bands/sweep.hpp"
 
 namespace entrain::bands {
 
@@ -14,6 +15,17 @@ struct Setting {
 
 struct FrameBand {
   Tick width = 0, start = 0;  // start: leading edge at the first stop, in [0, cycle); meaningless where width == 0
+};
+
+// Keeps its memory between calls.
+class Measure {
+ public:
+  FrameBand operator()(const Compiled& problem, int frame, const Setting& setting);
+
+ private:
+  std::vector<SweepStation> m_stations;
+  std::vector<SweepTerm> m_terms;
+  Sweep m_sweep;
 };
 
 FrameBand measure(const Compiled& problem, int frame, const Setting& setting);

@@ -90,7 +90,7 @@ struct StopAnswer {
 struct DirectionAnswer {
   double width_s = 0;
   double start_s = 0;         // system time modulo the cycle at which the leading edge passes the first stop
-  double bound_s = 0;         // width in the best continuous answer of the whole problem; width_s cannot be counted on to exceed it
+  double bound_s = 0;         // width in the best continuous answer of the whole problem (or alone, where that is not proved), at least width_s
   double least_window_s = 0;  // shortest of the longest windows of the chosen options: no band of theirs can be wider
   std::vector<StopAnswer> stops;
   std::vector<int> pinching;  // stops at which the leading or the trailing edge touches the window

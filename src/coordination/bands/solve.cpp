@@ -29,8 +29,8 @@ Answer to_answer(const Compiled& compiled, const JointSetting& joint) {
     corridor.own_best_share_s = corridor.share_bound_s = seconds(own.share);
     corridor.all_directions = joint.all_directions[c];
     corridor.witness = joint.witness[c];
-    corridor.directions[0].bound_s = to_seconds(joint.bound[c].first);
-    if (corridor.directions.size() > 1) corridor.directions[1].bound_s = to_seconds(joint.bound[c].second);
+    for (std::size_t d = 0; d < corridor.directions.size(); ++d)
+      corridor.directions[d].bound_s = std::max(corridor.directions[d].width_s, to_seconds(d == 0 ? joint.bound[c].first : joint.bound[c].second));
     answer.least_ratio = std::min(answer.least_ratio, ratio_of(share, own));
     if (!corridor.all_directions)
       answer.notes.push_back(note("corridor " + std::to_string(c), "no offsets give every direction a band at once; the widest band of one direction was taken"));
