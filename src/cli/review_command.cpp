@@ -3,6 +3,7 @@
 
 #include "cli/command.hpp"
 #include "cli/offsets_command.hpp"
+#include "cli/read_plans.hpp"
 #include "plan/plan_text.hpp"
 #include "review/review.hpp"
 #include "review/review_text.hpp"
@@ -16,27 +17,7 @@ struct ReviewCommand {
   bool recompute = false, require_safety = false;
 };
 
-struct Reviewed {
-  std::string path;
-  plan::Plan plan;
-};
-
-Diagnostics read_plans(const std::vector<std::string>& paths, std::vector<Reviewed>& out) {
-  Diagnostics problems;
-  for (const std::string& path : paths) {
-    const FileText text = read_whole_file(path, std::size_t{256} << 20);
-    if (!text.problems.empty()) {
-      append(problems, text.problems);
-      continue;
-    }
-    auto plan = plan::read_plan(text.bytes, path);
-    if (plan) out.push_back({path, std::move(*plan)});
-    else append(problems, plan.error());
-  }
-  return problems;
-}
-
-int recompute(const ReviewCommand& command, std::vector<Reviewed>& plans) {
+int recompute(const ReviewCommand& command, std::vector<NamedPlan>& plans) {
   if (plans.size() != 1) return fail({error("--recompute", fmt::format("{} plans", plans.size()), "one plan", "Recompute them one by one")}, wrong_usage);
   plans[0].plan = review::recomputed_claims(plans[0].plan);
   const Diagnostics problems = write_whole_file(command.output, plan::write_plan(plans[0].plan));
@@ -45,14 +26,14 @@ int recompute(const ReviewCommand& command, std::vector<Reviewed>& plans) {
 
 int run_review(const ReviewCommand& command, const CommonOptions& common) {
   if (!command.certificate.empty()) return review_certificate(command.plans[0], command.certificate, common);
-  std::vector<Reviewed> reviewed;
+  std::vector<NamedPlan> reviewed;
   const Diagnostics problems = read_plans(command.plans, reviewed);
   if (!problems.empty()) return fail(problems);
   if (command.recompute && command.output.empty()) return fail({error("--recompute", "no output file", "-o NEW", "Add -o with the new plan's name")}, wrong_usage);
   if (command.recompute)
     if (const int code = recompute(command, reviewed); code != done) return code;
   std::vector<plan::Plan> plans;
-  for (const Reviewed& one : reviewed) plans.push_back(one.plan);
+  for (const NamedPlan& one : reviewed) plans.push_back(one.plan);
   bool violated = false;
   const auto reviews = review::review_plans(plans, {command.require_safety});
   for (std::size_t i = 0; i < reviews.size(); ++i) {
