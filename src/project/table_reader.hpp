@@ -36,19 +36,34 @@ class TableReader {
   std::string word(std::size_t row, const std::string& column, const std::vector<std::string>& words);
   // A length or speed that may stand under either of two columns in different units; both and different is an error.
   std::optional<double> in_either_unit(std::size_t row, const std::string& si, const std::string& other, double factor, double least, double most);
+  // One of the columns has to be there.
+  void require_one_of(const std::string& a, const std::string& b);
 
   void problem(std::size_t row, const std::string& column, std::string found, std::string expected, std::string mend);
-  Diagnostics& problems() { return m_problems; }
+  // What was collected: of many alike (same column, same expectation) the first twenty and how many more.
+  Diagnostics take_problems();
+  bool has_problems() const { return !m_problems.empty(); }
   Diagnostics& notes() { return m_notes; }
 
  private:
   void find_header(const std::vector<ColumnRule>& rules, const std::map<std::string, std::string>& columns);
   void map_columns(const std::vector<ColumnRule>& rules, const std::map<std::string, std::string>& columns);
+  void report_missing(const std::vector<ColumnRule>& rules, const std::map<std::string, std::string>& columns);
+  std::string header_place() const;
+  // The number behind a cell, or what is wrong with it.
+  std::optional<double> parsed(std::size_t row, const std::string& column, double least, double most, bool whole);
 
   const TextGrid& m_grid;
   std::size_t m_header = 0;
   std::map<std::string, std::size_t> m_index;
+  std::vector<std::string> m_unknown;                                              // headings that no rule knows
+  std::map<std::pair<std::string, std::string>, std::size_t> m_alike;              // (column, expected) -> times
   Diagnostics m_problems, m_notes;
 };
+
+// The name behind a heading cell: small letters, blanks and hyphens as "_", no spreadsheet quoting.
+std::string heading_name(const std::string& cell);
+// What a cell holds: no blanks around, ="0015" and '0015 unwrapped.
+std::string cell_text(const std::string& cell);
 
 }  // namespace entrain::project

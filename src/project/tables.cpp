@@ -1,5 +1,6 @@
 #include "project/tables.hpp"
 
+#include "base/number_text.hpp"
 #include "base/quantity.hpp"
 #include "project/table_reader.hpp"
 
@@ -8,15 +9,22 @@ namespace {
 
 using Columns = std::map<std::string, std::string>;
 
-// Reads every data row by `read_row(reader, row)`.
+// Reads every data row by `read_row(reader, row)`; `check_columns` looks at the header first.
+template <class Row, class ReadRow, class CheckColumns>
+Result<Noted<std::vector<Row>>> read_rows(const TextGrid& grid, const std::vector<ColumnRule>& rules, const Columns& columns, ReadRow read_row, CheckColumns check_columns) {
+  TableReader reader(grid, rules, columns);
+  check_columns(reader);
+  std::vector<Row> rows;
+  if (reader.has_header() && !reader.has_problems())
+    for (const std::size_t row : reader.data_rows()) rows.push_back(read_row(reader, row));
+  if (reader.has_problems()) return failure(reader.take_problems());
+  if (rows.empty()) reader.notes().push_back(warning(grid.source, "no rows below the column names", "", "Fill the table or leave it out of [tables]"));
+  return Noted<std::vector<Row>>{std::move(rows), std::move(reader.notes())};
+}
+
 template <class Row, class ReadRow>
 Result<Noted<std::vector<Row>>> read_rows(const TextGrid& grid, const std::vector<ColumnRule>& rules, const Columns& columns, ReadRow read_row) {
-  TableReader reader(grid, rules, columns);
-  std::vector<Row> rows;
-  if (reader.has_header() && reader.problems().empty())
-    for (const std::size_t row : reader.data_rows()) rows.push_back(read_row(reader, row));
-  if (!reader.problems().empty()) return failure(std::move(reader.problems()));
-  return Noted<std::vector<Row>>{std::move(rows), std::move(reader.notes())};
+  return read_rows<Row>(grid, rules, columns, read_row, [](TableReader&) {});
 }
 
 const std::vector<std::string> clock_words = {"gps", "network", "line", "manual"};
@@ -76,11 +84,20 @@ MovementRow movement_row(TableReader& in, std::size_t r) {
   return row;
 }
 
+// "north", "n", "N2" -> "N", "N", "N2": legs are named by the side they lie on.
+std::string leg_name(const std::string& text) {
+  static const std::map<std::string, std::string> words = {{"NORTH", "N"}, {"EAST", "E"}, {"SOUTH", "S"}, {"WEST", "W"}, {"NORTHEAST", "NE"}, {"SOUTHEAST", "SE"}, {"SOUTHWEST", "SW"}, {"NORTHWEST", "NW"}};
+  const std::string name = upper(text);
+  const auto found = words.find(name);
+  return found == words.end() ? name : found->second;
+}
+
 CrossingRow crossing_row(TableReader& in, std::size_t r) {
   CrossingRow row;
   row.row = r;
   row.signal = in.required_text(r, "signal");
-  row.leg = in.required_text(r, "leg");
+  in.required_text(r, "leg");
+  row.leg = leg_name(in.text(r, "leg"));
   row.length_m = in.in_either_unit(r, "length_m", "length_ft", metres_per_foot, 1, 150);
   row.walk_s = in.number(r, "walk_s", 0, 300);
   row.walking_speed_mps = in.in_either_unit(r, "walking_speed_m_per_s", "walking_speed_ft_per_s", metres_per_foot, 0.3, 3);
@@ -96,6 +113,7 @@ TravelTimeRow travel_time_row(TableReader& in, std::size_t r) {
   row.row = r;
   row.from_signal = in.required_text(r, "from_signal");
   row.to_signal = in.required_text(r, "to_signal");
+  if (!row.from_signal.empty() && row.from_signal == row.to_signal) in.problem(r, "to_signal", printable(row.to_signal), "another signal than from_signal", "Correct the cell or remove the row");
   row.mean_s = in.required_number(r, "mean_s", 0.5, 3600);
   row.period = in.text(r, "period");
   row.sd_s = in.number(r, "sd_s", 0, 1000);
@@ -109,7 +127,9 @@ TimingRow timing_row(TableReader& in, std::size_t r) {
   row.row = r;
   row.period = in.text(r, "period");
   row.signal = in.required_text(r, "signal");
-  row.cycle_s = in.required_number(r, "cycle_s", 1, 3600);
+  const std::optional<double> cycle = in.number(r, "cycle_s", 10, 3600);
+  if (in.text(r, "cycle_s").empty()) in.required_text(r, "cycle_s");
+  row.cycle_s = cycle.value_or(0);
   row.offset_s = in.number(r, "offset_s", -3600, 3600);
   row.offset_reference = in.word(r, "offset_reference", reference_words);
   row.reference_group = in.text(r, "reference_group");
@@ -124,13 +144,23 @@ TimingRow timing_row(TableReader& in, std::size_t r) {
   row.pedestrian_clearance_s = in.number(r, "pedestrian_clearance_s", 0, 300);
   row.minimum_green_s = in.number(r, "minimum_green_s", 0, 300);
   row.coordinated = in.truth(r, "coordinated");
+  const auto below_cycle = [&](const char* column, std::optional<double> value, bool may_equal) {
+    if (value && row.cycle_s > 0 && (*value < 0 || *value > row.cycle_s || (*value == row.cycle_s && !may_equal)))
+      in.problem(r, column, number_text(*value), may_equal ? "0 to the signal's cycle_s" : "0 or more and below the signal's cycle_s", "Correct the cell or cycle_s = " + number_text(row.cycle_s));
+  };
+  below_cycle("offset_s", row.offset_s, false);
+  below_cycle("green_start_s", row.green_start_s, false);
+  below_cycle("green_s", row.green_s, true);
+  below_cycle("split_s", row.split_s, true);
   if (!row.split_s && !(row.green_start_s && row.green_s)) in.problem(r, "split_s", "nothing", "split_s, or green_start_s and green_s", "Fill the cells");
   return row;
 }
 
 ConflictRow conflict_row(TableReader& in, std::size_t r) {
-  return {r, in.required_text(r, "signal"), in.required_text(r, "group_a"), in.required_text(r, "group_b"), in.required_number(r, "intergreen_ab_s", 0, 60),
-          in.required_number(r, "intergreen_ba_s", 0, 60)};
+  ConflictRow row{r, in.required_text(r, "signal"), in.required_text(r, "group_a"), in.required_text(r, "group_b"), in.required_number(r, "intergreen_ab_s", 0, 60),
+                  in.required_number(r, "intergreen_ba_s", 0, 60)};
+  if (!row.group_a.empty() && row.group_a == row.group_b) in.problem(r, "group_b", printable(row.group_b), "another group than group_a", "Correct the cell or remove the row");
+  return row;
 }
 
 }  // namespace
@@ -148,7 +178,8 @@ Result<Noted<std::vector<MovementRow>>> read_movement_rows(const TextGrid& grid,
 
 Result<Noted<std::vector<CrossingRow>>> read_crossing_rows(const TextGrid& grid, const Columns& columns) {
   return read_rows<CrossingRow>(grid, {{"signal", true}, {"leg", true}, {"length_m"}, {"length_ft"}, {"walk_s"}, {"group"}, {"walking_speed_m_per_s"}, {"walking_speed_ft_per_s"},
-                                       {"refuge_after_m"}, {"refuge_after_ft"}, {"button_distance_m"}, {"button_distance_ft"}, {"service"}}, columns, crossing_row);
+                                       {"refuge_after_m"}, {"refuge_after_ft"}, {"button_distance_m"}, {"button_distance_ft"}, {"service"}}, columns, crossing_row,
+                                [](TableReader& reader) { reader.require_one_of("length_m", "length_ft"); });
 }
 
 Result<Noted<std::vector<TravelTimeRow>>> read_travel_time_rows(const TextGrid& grid, const Columns& columns) {

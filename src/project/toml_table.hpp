@@ -4,15 +4,15 @@
 #include <fmt/format.h>
 
 #include <cmath>
-#include <locale>
 #include <optional>
 #include <set>
-#include <sstream>
 #include <string>
 #include <toml++/toml.h>
 #include <vector>
 
 #include "base/diagnostic.hpp"
+#include "base/near_name.hpp"
+#include "base/number_text.hpp"
 
 namespace entrain::project {
 
@@ -28,15 +28,17 @@ class TomlTable {
   TomlTable& operator=(const TomlTable&) = delete;
   ~TomlTable() {
     for (const auto& [key, node] : m_table)
-      if (m_asked.count(std::string(key.str())) == 0)
-        m_context.notes.push_back(warning(where(node, std::string(key.str())), "a key this version does not know", "", "Check its spelling; it was not used"));
+      if (const std::string name(key.str()); m_asked.count(name) == 0)
+        m_context.notes.push_back(warning(where(node, name), "a key this version does not know", "", did_you_mean(name, unused(), "Check its spelling:") + " it was not used"));
   }
 
   void problem(const toml::node& node, const std::string& key, std::string found, std::string expected, std::string mend) {
     m_context.problems.push_back(error(where(node, key), std::move(found), std::move(expected), std::move(mend)));
   }
+  // Silent where the key is there with a value of another kind: that was said already.
   void missing(const std::string& key, const std::string& what) {
-    m_context.problems.push_back(error(fmt::format("{} {}", m_context.file, m_path), "no key " + key, what, fmt::format("Add {} = ...", key)));
+    if (const toml::node* node = m_table.get(key); node != nullptr && !node->is_string()) return;
+    m_context.problems.push_back(error(m_path.empty() ? m_context.file : m_context.file + " " + m_path, "no key " + key, what, fmt::format("Add {} = ...", key)));
   }
   const toml::node* find(const std::string& key) {
     m_asked.insert(key);
@@ -61,14 +63,14 @@ class TomlTable {
       }
       all += (all.empty() ? "" : ", ") + std::string(candidate);
     }
-    problem(*m_table.get(key), key, printable(value), "one of " + all, "Use one of these words");
+    problem(*m_table.get(key), key, printable(value), "one of " + all, did_you_mean(value, std::vector<std::string>(words.begin(), words.end()), "Use one of these words"));
   }
   bool number(const std::string& key, double& out, double least, double most) {
     const toml::node* node = find(key);
     if (node == nullptr) return false;
     const auto value = node->is_number() ? node->value<double>() : std::nullopt;
     if (value && std::isfinite(*value) && *value >= least && *value <= most) return out = *value, true;
-    problem(*node, key, shown(*node), fmt::format("a number from {} to {}", least, most), "Correct the value");
+    problem(*node, key, shown(*node), fmt::format("a number from {} to {}", number_text(least), number_text(most)), "Correct the value");
     return false;
   }
   bool whole(const std::string& key, int& out, int least, int most) {
@@ -110,29 +112,41 @@ class TomlTable {
     const toml::node* node = find(key);
     if (node == nullptr) return;
     const toml::array* array = node->as_array();
-    if (array == nullptr || !array->is_array_of_tables()) return problem(*node, key, shown(*node), "a list of tables", fmt::format("Write it as [[{}]]", path_of(key)));
+    if (array == nullptr || (!array->empty() && !array->is_array_of_tables())) return problem(*node, key, shown(*node), "a list of tables", fmt::format("Write it as [[{}]]", key));
     std::size_t i = 0;
-    for (const toml::node& element : *array) use(*element.as_table(), fmt::format("[[{}]] {}", path_of(key), ++i));
+    for (const toml::node& element : *array) use(*element.as_table(), fmt::format("{}[[{}]] {}", m_path.empty() ? "" : m_path + " ", key, ++i));
   }
 
-  std::string path_of(const std::string& key) const { return m_path.empty() ? key : m_path + "." + key; }
+  // "roads.source", "[[corridor]] 2 weights.forward"
+  std::string path_of(const std::string& key) const {
+    if (m_path.empty()) return key;
+    const auto bracket = m_path.rfind("]] ");
+    const bool numbered = bracket != std::string::npos && m_path.find_first_not_of("0123456789", bracket + 3) == std::string::npos;
+    return m_path + (numbered ? " " : ".") + key;
+  }
   TomlContext& context() { return m_context; }
 
   static std::string shown(const toml::node& node) {
     if (const auto value = node.value<std::string>()) return printable(*value);
-    std::ostringstream out;
-    out.imbue(std::locale::classic());
-    if (const auto v = node.as_integer()) out << v->get();
-    else if (const auto f = node.as_floating_point()) out << f->get();
-    else if (const auto b = node.as_boolean()) out << (b->get() ? "true" : "false");
-    else out << "a " << node.type();
-    return printable(out.str());
+    if (const auto v = node.as_integer()) return std::to_string(v->get());
+    if (const auto f = node.as_floating_point()) return std::isfinite(f->get()) ? number_text(f->get(), 6) : "no finite number";
+    if (const auto b = node.as_boolean()) return b->get() ? "true" : "false";
+    if (node.is_table()) return "a table";
+    return node.is_array() ? "a list" : "a date or time";
   }
   std::string where(const toml::node& node, const std::string& key) const {
-    return fmt::format("{} line {}, {}", m_context.file, node.source().begin.line, path_of(key));
+    return fmt::format("{} line {}, {}", m_context.file, node.source().begin.line, printable(path_of(key)));
   }
 
  private:
+  // Known keys that are not there: what a misspelt one may have meant.
+  std::vector<std::string> unused() const {
+    std::vector<std::string> names;
+    for (const std::string& name : m_asked)
+      if (!m_table.contains(name)) names.push_back(name);
+    return names;
+  }
+
   TomlContext& m_context;
   const toml::table& m_table;
   std::string m_path;
