@@ -81,7 +81,7 @@ class LayerReader {
   Result<Noted<RoadSource>> read() {
     const GdalQuiet quiet;
     const GDALDatasetUniquePtr data(GDALDataset::Open(m_path.c_str(), GDAL_OF_VECTOR | GDAL_OF_READONLY));
-    if (!data) return failure(error(m_path, "can't be read: " + printable(quiet.errors(), 300), "a vector file that GDAL opens, or OpenStreetMap data", "Check the file and its ending"));
+    if (!data) return failure(error(m_path, quiet.errors().empty() ? "no format that is known" : "can't be read: " + printable(quiet.errors(), 300), "a vector file that GDAL opens, or OpenStreetMap data", "Check the file and its ending"));
     OGRLayer* layer = choose_layer(*data);
     if (layer == nullptr || !map_columns(*layer)) return failure(std::move(m_problems));
     const auto to_degrees = transformation(*layer);

@@ -1,4 +1,5 @@
 #include <fmt/format.h>
+#include <zlib.h>
 
 #include <algorithm>
 #include <osmium/handler.hpp>
@@ -96,11 +97,27 @@ void read_pass(const osmium::io::File& file, osmium::osm_entity_bits::type kinds
   input.close();
 }
 
+// libosmium takes the end of a cut gzip stream for the end of the data: read it once to its checksum.
+bool gzip_is_whole(const std::string& path) {
+  gzFile file = gzopen(path.c_str(), "rb");
+  if (file == nullptr) return false;
+  std::vector<char> buffer(1 << 16);
+  int got = 0;
+  while ((got = gzread(file, buffer.data(), static_cast<unsigned>(buffer.size()))) > 0) {
+  }
+  int code = Z_OK;
+  gzerror(file, &code);
+  const int closed = gzclose(file);
+  return got == 0 && code == Z_OK && closed == Z_OK;
+}
+
 }  // namespace
 
 Result<Noted<RoadSource>> read_osm_roads(const std::string& path) {
   RoadSource source;
   source.file = path;
+  if (path.size() > 3 && path.compare(path.size() - 3, 3, ".gz") == 0 && !gzip_is_whole(path))
+    return failure(error(path, "a gzip file that is cut off or damaged", "a whole OpenStreetMap file", "Fetch or export the extract again"));
   try {
     const osmium::io::File file(path);
     WayReader ways(source);

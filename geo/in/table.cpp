@@ -61,7 +61,7 @@ Result<project::TextGrid> read_by_gdal(const std::string& path, const std::strin
   CPLSetThreadLocalConfigOption("OGR_ODS_HEADERS", "DISABLE");
   CPLSetThreadLocalConfigOption("OGR_ODS_FIELD_TYPES", "STRING");
   const GDALDatasetUniquePtr data(GDALDataset::Open(path.c_str(), GDAL_OF_VECTOR | GDAL_OF_READONLY));
-  if (!data) return failure(error(path, "can't be read: " + printable(quiet.errors(), 300), "a table that GDAL opens (CSV, XLSX, ODS, GeoPackage ...)", "Save it again in one of these formats"));
+  if (!data) return failure(error(path, quiet.errors().empty() ? "no format that is known" : "can't be read: " + printable(quiet.errors(), 300), "a table that GDAL opens (CSV, XLSX, ODS, GeoPackage ...)", "Save it again in one of these formats"));
   OGRLayer* layer = sheet.empty() ? data->GetLayer(0) : data->GetLayerByName(sheet.c_str());
   if (layer == nullptr) return failure(error(path, sheet.empty() ? "no sheet" : "no sheet " + printable(sheet), "one of: " + printable(sheets_of(*data)), "Name a sheet that is there"));
   project::TextGrid grid{path, {}};

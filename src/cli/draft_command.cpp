@@ -95,10 +95,11 @@ int run_draft(const DraftCommand& command, const CommonOptions& common) {
   }
   for (auto& row : drafted->value.plans) add_notes(loaded->notes, row.plan);
   Diagnostics problems = write_plans(drafted->value, command.output);
+  if (!problems.empty()) return fail({problems.front()});
   std::vector<plan::Plan> plans;
   for (const auto& row : drafted->value.plans) plans.push_back(row.plan);
-  append(problems, write_reports(plans, command.output, report_options(common)));
-  if (!problems.empty()) return fail(problems);
+  problems = write_reports(plans, command.output, report_options(common));
+  if (!problems.empty()) return fail({problems.front()});
   print_diagnostics(loaded->notes, common.quiet);
   if (common.json) {
     fmt::print("{}\n", summary_of(drafted->value, command.output).dump(1, ' ', false, nlohmann::ordered_json::error_handler_t::replace));

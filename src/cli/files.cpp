@@ -13,8 +13,14 @@
 namespace entrain::cli {
 
 void print_diagnostics(const Diagnostics& diagnostics, bool quiet) {
-  for (const Diagnostic& d : diagnostics)
-    if (d.severity == Severity::error || !quiet) fmt::print(stderr, "{}\n", to_text(d));
+  constexpr std::size_t most = 200;  // a table of 100,000 wrong rows says the same 100,000 times
+  std::size_t shown = 0, held_back = 0;
+  for (const Diagnostic& d : diagnostics) {
+    if (d.severity != Severity::error && quiet) continue;
+    if (++shown <= most) fmt::print(stderr, "{}\n", to_text(d));
+    else ++held_back;
+  }
+  if (held_back > 0) fmt::print(stderr, "... and {} more like these\n", held_back);
 }
 
 int fail(const Diagnostics& diagnostics, ExitCode code) {

@@ -22,7 +22,7 @@ int run_sheet(const SheetCommand& command, const CommonOptions& common) {
   ReportOptions options = report_options(common);
   options.page = command.page;
   problems = write_reports(plans, command.output, options);
-  if (!problems.empty()) return fail(problems);
+  if (!problems.empty()) return fail({problems.front()});
   if (common.json) fmt::print("{{\"index\": \"{}/index.html\"}}\n", command.output);
   else fmt::print("open {}/index.html\n", command.output);
   return done;

@@ -55,7 +55,7 @@ class CorridorFinder {
     return std::any_of(legs.begin(), legs.end(), [&](const Leg& leg) { return plain_street_name(leg.street) == m_street; });
   }
   bool link_is_on_street(const SignalLink& link) const {
-    if (link.from_leg < 0 || link.to_leg < 0) return true;
+    if (m_street.empty() || link.from_leg < 0 || link.to_leg < 0) return true;
     return plain_street_name(signal(link.from_signal).legs[static_cast<std::size_t>(link.from_leg)].street) == m_street ||
            plain_street_name(signal(link.to_signal).legs[static_cast<std::size_t>(link.to_leg)].street) == m_street;
   }
