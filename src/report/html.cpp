@@ -30,9 +30,20 @@ void write_header(XmlWriter& writer, const Table& table) {
   }
 }
 
+// A word that would stretch its column.
+bool has_long_word(const std::string& text) {
+  std::size_t length = 0;
+  for (const char c : text) {
+    length = c == ' ' ? 0 : length + 1;
+    if (length > 28) return true;
+  }
+  return false;
+}
+
 void write_cell(XmlWriter& writer, const Table& table, const Cell& cell, std::size_t position) {
   std::string words = position < table.columns.size() ? class_of(table.columns[position].align) : "";
   if (cell.strong) words += words.empty() ? "s" : " s";
+  if (has_long_word(cell.text)) words += words.empty() ? "long" : " long";
   const auto element = writer.element("td", with_class(words));
   write_text_and_beside(writer, cell.text, cell.beside);
 }

@@ -80,11 +80,49 @@ std::string padded(const std::string& text, std::size_t width, Align align) {
 
 using TextRows = std::vector<std::vector<std::string>>;
 
-std::vector<std::size_t> column_widths(const TextRows& rows, std::size_t columns) {
-  std::vector<std::size_t> widths(columns, 0);
+std::size_t longest_word(const std::string& text) {
+  std::size_t longest = 0;
+  for (std::size_t from = 0; from <= text.size();) {
+    const std::size_t to = std::min(text.find(' ', from), text.size());
+    longest = std::max(longest, display_width(text.substr(from, to - from)));
+    from = to + 1;
+  }
+  return longest;
+}
+
+// As wide as the widest cell, or as the longest word of the header.
+std::vector<std::size_t> column_widths(const TextRows& rows, const std::vector<std::string>& names) {
+  std::vector<std::size_t> widths;
+  for (const std::string& name : names) widths.push_back(longest_word(name));
   for (const auto& row : rows)
-    for (std::size_t i = 0; i < row.size() && i < columns; ++i) widths[i] = std::max(widths[i], display_width(row[i]));
+    for (std::size_t i = 0; i < row.size() && i < widths.size(); ++i) widths[i] = std::max(widths[i], display_width(row[i]));
   return widths;
+}
+
+std::vector<std::string> broken(const std::string& text, std::size_t width) {
+  std::vector<std::string> lines(1);
+  for (std::size_t from = 0; from <= text.size();) {
+    const std::size_t to = std::min(text.find(' ', from), text.size());
+    const std::string word = text.substr(from, to - from), longer = lines.back().empty() ? word : lines.back() + " " + word;
+    if (display_width(longer) <= width || lines.back().empty()) lines.back() = longer;
+    else lines.push_back(word);
+    from = to + 1;
+  }
+  return lines;
+}
+
+// The header's names broken at blanks, standing on the rule below them.
+TextRows header_rows(const std::vector<std::string>& names, const std::vector<std::size_t>& widths) {
+  std::vector<std::vector<std::string>> columns;
+  std::size_t height = 0;
+  for (std::size_t i = 0; i < names.size(); ++i) {
+    columns.push_back(broken(names[i], widths[i]));
+    height = std::max(height, columns.back().size());
+  }
+  TextRows rows(height, std::vector<std::string>(names.size()));
+  for (std::size_t i = 0; i < columns.size(); ++i)
+    for (std::size_t k = 0; k < columns[i].size(); ++k) rows[height - columns[i].size() + k][i] = columns[i][k];
+  return rows;
 }
 
 std::string line_of(const std::vector<std::string>& row, const std::vector<std::size_t>& widths, const Table& table) {
@@ -131,15 +169,19 @@ std::string csv(const Table& table) {
 }
 
 std::string terminal_text(const Table& table) {
-  TextRows rows{names_of(table)};
+  std::vector<std::string> names = names_of(table);
+  for (std::string& name : names) name = safe_for_terminal(name);
+  TextRows rows;
   for (const auto& row : table.rows) rows.push_back(texts_of(row));
   for (auto& row : rows)
     for (auto& text : row) text = safe_for_terminal(text);
-  const auto widths = column_widths(rows, table.columns.size());
+  const auto widths = column_widths(rows, names);
   std::string out = table.title.empty() ? "" : safe_for_terminal(table.title) + "\n";
+  for (const auto& row : header_rows(names, widths)) out += line_of(row, widths, table);
   std::vector<std::string> rules;
   for (const std::size_t width : widths) rules.emplace_back(width, '-');
-  for (std::size_t i = 0; i < rows.size(); ++i) out += line_of(rows[i], widths, table) + (i == 0 ? line_of(rules, widths, table) : "");
+  out += line_of(rules, widths, table);
+  for (const auto& row : rows) out += line_of(row, widths, table);
   return table.note.empty() ? out : out + safe_for_terminal(table.note) + "\n";
 }
 

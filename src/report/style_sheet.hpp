@@ -17,8 +17,8 @@ table { border-collapse: collapse; margin: .4rem 0; font-variant-numeric: tabula
 caption { text-align: left; font-weight: bold; padding: .3rem 0; }
 th, td { border-bottom: 1px solid #999; padding: .16rem .5rem; text-align: left; vertical-align: baseline; }
 th { border-bottom: 1.5px solid #000; font-weight: bold; vertical-align: bottom; font-size: .86rem; line-height: 1.1; overflow-wrap: normal; }
-td { overflow-wrap: anywhere; }
-.r { text-align: right; } .c { text-align: center; } td.r, td.c { overflow-wrap: normal; white-space: nowrap; }
+td { overflow-wrap: break-word; } td.long { overflow-wrap: anywhere; }
+.r { text-align: right; } .c { text-align: center; } td.r:not(.long), td.c:not(.long) { overflow-wrap: normal; white-space: nowrap; }
 td.s, span.s { font-weight: bold; }
 small { font-size: .78em; font-weight: normal; white-space: nowrap; }
 .note, .small { font-size: .8rem; }
