@@ -102,19 +102,24 @@ class Times {
       const network::Leg& leg = approach_leg(served.movement);
       const double speed = speed_mps(served, arrow), width = clearing_width_m(m_input.signal, movement(served.movement));
       const double clearing = arrow ? std::min(speed, value_or(m_input.standard, "turn_clearing_speed_mps", speed)) : speed;
-      const Tenths yellow = standards::yellow_change(m_input.standard, speed, leg.grade_in);
-      const Tenths red = standards::red_clearance(m_input.standard, width, clearing);
-      if (yellow > group.yellow) group.yellow = yellow, basis.speed_mps = speed, basis.grade = leg.grade_in;
-      if (red > group.red_clearance || basis.width_m == 0) {
-        group.red_clearance = std::max(group.red_clearance, red);
-        basis.width_m = width;
-        if (clearing != speed) basis.clearing_speed_mps = clearing;
-      }
+      const standards::ChangeInterval times = standards::change_interval(m_input.standard, speed, clearing, leg.grade_in, width);
+      if (times.yellow > group.yellow) group.yellow = times.yellow, basis.speed_mps = speed, basis.grade = std::clamp(leg.grade_in, -0.25, 0.25);
+      if (times.red_clearance > group.red_clearance) group.red_clearance = times.red_clearance, basis.width_m = width, basis.clearing_speed_mps = clearing;
+      remark_limits(group, times);
       group.minimum_green = std::max(group.minimum_green, standards::minimum_green(m_input.standard, kind_of(m_input.standard, leg, arrow)));
     }
+    if (basis.clearing_speed_mps == basis.speed_mps) basis.clearing_speed_mps.reset();
     group.basis = basis;
     group.start_up_lost_s = value_or(m_input.standard, "start_up_lost_s", 2.0);
     group.end_gain_s = value_or(m_input.standard, "end_gain_s", 2.0);
+  }
+
+  void remark_limits(const Group& group, const standards::ChangeInterval& times) {
+    if (times.yellow_cut)
+      m_notes.push_back(warning(where(group), "the yellow equation asks for more than the standard's longest yellow: the rest was given to red clearance"));
+    if (times.red_above_maximum)
+      m_notes.push_back(warning(where(group), "red clearance " + number_text(times.red_clearance.seconds(), 1) + " s is above the standard's longest", "a shorter way across the intersection",
+                                "Check the leg widths and speeds; the value was not cut."));
   }
 
   void set_walk(Group& group) {
@@ -198,7 +203,10 @@ class Times {
     if (e.key == "minimum_green_s" && !walks) target = &group.minimum_green;
     if (e.key == "walk_s" && walks) target = &group.minimum_green;
     if (e.key == "pedestrian_clearance_s" && walks) target = &group.clearance;
-    if (e.key == "walking_speed_mps") return walks;
+    if (e.key == "walking_speed_mps") {
+      if (walks) record(e, group);
+      return walks;
+    }
     if (!target) return false;
     const bool tenths = target == &group.yellow || target == &group.red_clearance;
     if (!(e.value >= 0) || e.value > 300 || (e.key == "yellow_s" && e.value < value_or(m_input.standard, "yellow_min_s", 3.0) - 1e-9)) {
@@ -239,10 +247,11 @@ class Times {
       m_errors.push_back(error(where(group) + ", speed_mps", number_text(e.value) + " m/s", "between 0 and 60 m/s", "Correct the exception."));
       return true;
     }
-    const Tenths yellow = standards::yellow_change(m_input.standard, e.value, group.basis->grade);
-    const Tenths red = standards::red_clearance(m_input.standard, group.basis->width_m, group.basis->clearing_speed_mps.value_or(e.value));
-    take(e, group, group.yellow, yellow);
-    take(e, group, group.red_clearance, red);
+    const double clearing = group.basis->clearing_speed_mps.value_or(e.value);
+    const auto times = standards::change_interval(m_input.standard, e.value, std::min(clearing, e.value), group.basis->grade, group.basis->width_m);
+    take(e, group, group.yellow, times.yellow);
+    take(e, group, group.red_clearance, times.red_clearance);
+    remark_limits(group, times);
     group.basis->speed_mps = e.value;
     return true;
   }

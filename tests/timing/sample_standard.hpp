@@ -1,17 +1,13 @@
-// A small design standard for the tests, built in code.
+// The design standard that the tests use: the one that comes with the program.
 #pragma once
 
-#include "standards/design_standard.hpp"
+#include "standards/embedded.hpp"
 
 namespace entrain::timing::sample {
 
-inline standards::DesignStandard standard() {
-  standards::DesignStandard standard;
-  standard.id = "test";
-  const auto set = [&](const char* key, double value) { standard.values[key] = {value, "invented for the tests", false}; };
-  set("pedestrian_buffer_s", 3);
-  standard.allowed = {{"opposed_turn", true}, {"turn_over_crossing", true}};
-  return standard;
+inline standards::DesignStandard standard(const std::string& id = "kinematic-us") {
+  auto found = standards::find_standard(id, "test");
+  return found ? *found : standards::DesignStandard{};
 }
 
 }  // namespace entrain::timing::sample
