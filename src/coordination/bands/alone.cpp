@@ -11,7 +11,11 @@ namespace {
 class FixedCorridor {
  public:
   FixedCorridor(const Compiled& problem, int corridor, const OptionLists& options, std::int64_t most_nodes)
-      : m_problem(problem), m_frames(problem.corridors[static_cast<std::size_t>(corridor)]), m_corridors{corridor}, m_options(options), m_nodes(most_nodes) {
+      : m_problem(problem),
+        m_frames(problem.corridors[static_cast<std::size_t>(corridor)]),
+        m_corridors{corridor},
+        m_options(options),
+        m_nodes(most_nodes) {
     m_demands.resize(problem.frames.size());
     m_best = m_demands;
   }
@@ -27,18 +31,22 @@ class FixedCorridor {
     alone.single = leading;
     alone.all_directions = m_frames.size() == 1;
     Widths widths{leading == 0 ? m_single[0] : 0, leading == 1 ? m_single[1] : 0};
-    if (m_frames.size() == 1 || (weight(0) > 0 && weight(1) > 0) || !(weight(leading) > 0)) return finish(alone, widths);
+    if (m_frames.size() == 1 || (weight(0) > 0 && weight(1) > 0) || !(weight(leading) > 0))
+      return finish(alone, widths);
     alone.all_directions = fits(widths, {true, true});
     return finish(alone, alone.all_directions ? extend(widths) : widths);
   }
 
  private:
-  struct Active { bool first = false, second = false; };
+  struct Active {
+    bool first = false, second = false;
+  };
 
   double weight(int direction) const {
     const double own = m_problem.frames[static_cast<std::size_t>(m_frames[static_cast<std::size_t>(direction)])].weight;
     double largest = own;
-    for (const int frame : m_frames) largest = std::max(largest, m_problem.frames[static_cast<std::size_t>(frame)].weight);
+    for (const int frame : m_frames)
+      largest = std::max(largest, m_problem.frames[static_cast<std::size_t>(frame)].weight);
     return own / largest;
   }
 
@@ -57,7 +65,8 @@ class FixedCorridor {
   }
 
   Widths widths_at(Widths base, double first_rate, double second_rate, Tick t) const {
-    return {base.first + static_cast<Tick>(first_rate * static_cast<double>(t)), base.second + static_cast<Tick>(second_rate * static_cast<double>(t))};
+    return {base.first + static_cast<Tick>(first_rate * static_cast<double>(t)),
+            base.second + static_cast<Tick>(second_rate * static_cast<double>(t))};
   }
 
   bool fits(const Widths& widths, Active active) {
@@ -77,8 +86,10 @@ class FixedCorridor {
     Tick low = 0, high = m_problem.cycle + 1;
     while (high - low > 1) {
       const Tick middle = low + (high - low) / 2;
-      if (fits(widths_at(base, first_rate, second_rate, middle), active)) low = middle;
-      else high = middle;
+      if (fits(widths_at(base, first_rate, second_rate, middle), active))
+        low = middle;
+      else
+        high = middle;
     }
     return low;
   }
@@ -120,7 +131,8 @@ void anchor(const Compiled& problem, Alone& alone) {
     const CompiledStation& station = problem.stations[static_cast<std::size_t>(fixed.station)];
     if (!station.is_fixed) continue;
     const Tick shift = fixed.length >= station.period ? 0 : station.fixed - fixed.from - fixed.length / 2;
-    for (Placed& placed : alone.placed) placed.from = wrap(placed.from + shift, problem.stations[static_cast<std::size_t>(placed.station)].period);
+    for (Placed& placed : alone.placed)
+      placed.from = wrap(placed.from + shift, problem.stations[static_cast<std::size_t>(placed.station)].period);
     alone.anchored = true;
   }
   for (Placed& placed : alone.placed) {
@@ -148,12 +160,14 @@ std::vector<int> stations_of(const Compiled& problem, int corridor) {
 
 int fixed_count(const Compiled& problem, int corridor) {
   int count = 0;
-  for (const int station : stations_of(problem, corridor)) count += problem.stations[static_cast<std::size_t>(station)].is_fixed ? 1 : 0;
+  for (const int station : stations_of(problem, corridor))
+    count += problem.stations[static_cast<std::size_t>(station)].is_fixed ? 1 : 0;
   return count;
 }
 
 Alone solve_alone(const Compiled& problem, int corridor, const OptionLists& options, std::int64_t most_nodes) {
-  if (!is_simple(problem, corridor) || fixed_count(problem, corridor) > 1) return FixedCorridor(problem, corridor, options, most_nodes).run();
+  if (!is_simple(problem, corridor) || fixed_count(problem, corridor) > 1)
+    return FixedCorridor(problem, corridor, options, most_nodes).run();
   CorridorBands bands(problem, corridor, options);
   const CorridorOptimum optimum = bands.best();
   Alone alone;

@@ -12,7 +12,7 @@ using OptionLists = std::vector<std::vector<int>>;  // allowed options by statio
 
 struct Alone {
   Widths widths;
-  double share = 0;            // ticks per weight
+  double share = 0;  // ticks per weight
   bool all_directions = true;
   int single = 0;              // the direction that has its band where not all have
   std::vector<Placed> placed;  // stations met, ascending, options and arcs of offsets for one position of the bands
@@ -28,7 +28,8 @@ int fixed_count(const Compiled& problem, int corridor);
 
 Alone solve_alone(const Compiled& problem, int corridor, const OptionLists& options, std::int64_t most_nodes);
 
-// The same with offsets in whole seconds (fixed ones as they are): placed arcs have length 0. `bound` is the continuous answer.
+// The same with offsets in whole seconds (fixed ones as they are): placed arcs have length 0. `bound` is the continuous
+// answer.
 Alone solve_alone_whole_seconds(const Compiled& problem, int corridor, const OptionLists& options, const Alone& bound);
 
 }  // namespace entrain::bands

@@ -56,7 +56,8 @@ Tick ArcNetwork::play(State& state, const Relation& relation) const {
   bool whole = false;
   Tick longest = -1;
   const Tick low = -at(state, relation.b, relation.a), high = at(state, relation.a, relation.b);
-  for (const Bound& bound : candidates(state, relation, whole)) longest = std::max(longest, std::min(high, bound.high) - std::max(low, bound.low));
+  for (const Bound& bound : candidates(state, relation, whole))
+    longest = std::max(longest, std::min(high, bound.high) - std::max(low, bound.low));
   return longest;
 }
 
@@ -66,13 +67,16 @@ void ArcNetwork::sort_branch(State& state, Branch& branch) const {
   std::vector<std::pair<Tick, int>> order;
   for (const int alternative : branch.alternatives) {
     Tick least = m_spans.empty() ? 0 : at(state, 0, 0) + (Tick{1} << 60);
-    for (const Relation& relation : m_choices[choice].alternatives[static_cast<std::size_t>(alternative)]) least = std::min(least, play(state, relation));
+    for (const Relation& relation : m_choices[choice].alternatives[static_cast<std::size_t>(alternative)])
+      least = std::min(least, play(state, relation));
     order.push_back({-least, alternative});
   }
   std::sort(order.begin(), order.end());
   for (std::size_t i = 0; i < order.size(); ++i) branch.alternatives[i] = order[i].second;
   if (branch.bounds.empty()) return;
-  const Relation& relation = m_choices[choice].alternatives[static_cast<std::size_t>(state.taken[choice])][static_cast<std::size_t>(branch.relation)];
+  const Relation& relation =
+      m_choices[choice]
+          .alternatives[static_cast<std::size_t>(state.taken[choice])][static_cast<std::size_t>(branch.relation)];
   const Tick low = -at(state, relation.b, relation.a), high = at(state, relation.a, relation.b);
   std::stable_sort(branch.bounds.begin(), branch.bounds.end(), [&](const Bound& a, const Bound& b) {
     return std::min(high, a.high) - std::max(low, a.low) > std::min(high, b.high) - std::max(low, b.low);
@@ -84,7 +88,8 @@ bool ArcNetwork::settle_choice(State& state, std::size_t index, Branch& branch, 
   std::vector<int> open;
   for (std::size_t i = 0; i < choice.alternatives.size(); ++i) {
     const auto& relations = choice.alternatives[i];
-    if (std::all_of(relations.begin(), relations.end(), [&](const Relation& r) { return any_candidate(state, r); })) open.push_back(static_cast<int>(i));
+    if (std::all_of(relations.begin(), relations.end(), [&](const Relation& r) { return any_candidate(state, r); }))
+      open.push_back(static_cast<int>(i));
   }
   if (open.empty()) return false;
   if (open.size() == 1) {
@@ -130,16 +135,21 @@ ArcNetwork::Step ArcNetwork::propagate(State& state, Branch& branch) const {
 void ArcNetwork::finish(State& state) {
   m_taken = state.taken;
   m_positions.clear();
-  for (int i = 0; i < m_size; ++i) m_positions.push_back(-at(state, i, 0));  // the earliest placement satisfies every bound
+  for (int i = 0; i < m_size; ++i)
+    m_positions.push_back(-at(state, i, 0));  // the earliest placement satisfies every bound
 }
 
 Verdict ArcNetwork::descend(State state, std::int64_t& nodes) {
   if (nodes-- <= 0) return Verdict::unknown;
   Branch branch;
   switch (propagate(state, branch)) {
-    case Step::dead: return Verdict::fails;
-    case Step::done: finish(state); return Verdict::fits;
-    case Step::branched: break;
+    case Step::dead:
+      return Verdict::fails;
+    case Step::done:
+      finish(state);
+      return Verdict::fits;
+    case Step::branched:
+      break;
   }
   sort_branch(state, branch);
   const auto choice = static_cast<std::size_t>(branch.choice);

@@ -9,7 +9,8 @@ enum class Role { none, private_to_corridor, point, fixed };
 
 class Builder {
  public:
-  Builder(const Compiled& problem, const std::vector<int>& corridors, const std::vector<BandDemand>& demands, const std::vector<std::vector<int>>& options)
+  Builder(const Compiled& problem, const std::vector<int>& corridors, const std::vector<BandDemand>& demands,
+          const std::vector<std::vector<int>>& options)
       : m_problem(problem), m_corridors(corridors), m_demands(demands), m_options(options) {}
 
   // False where a window is too short whatever the offsets.
@@ -39,7 +40,8 @@ class Builder {
       ++visits;
       if (before) {
         repeated = repeated || before->frame == visit.frame;
-        shared = shared || m_problem.frames[static_cast<std::size_t>(before->frame)].corridor != m_problem.frames[static_cast<std::size_t>(visit.frame)].corridor;
+        shared = shared || m_problem.frames[static_cast<std::size_t>(before->frame)].corridor !=
+                               m_problem.frames[static_cast<std::size_t>(visit.frame)].corridor;
       }
       before = &visit;
     }
@@ -73,7 +75,8 @@ class Builder {
     Widths widths{is_active(frames[0]) ? m_demands[static_cast<std::size_t>(frames[0])].width : 0, 0};
     if (frames.size() < 2 || !is_active(frames[0]) || !is_active(frames[1])) return caps_fit(frames, include);
     widths.second = m_demands[static_cast<std::size_t>(frames[1])].width;
-    const std::vector<CorridorBands::PhiArc> fits = CorridorBands(m_problem, corridor, m_options, &include).fitting(widths);
+    const std::vector<CorridorBands::PhiArc> fits =
+        CorridorBands(m_problem, corridor, m_options, &include).fitting(widths);
     if (fits.empty()) return false;
     if (fits.size() == 1 && fits[0].from == 0 && fits[0].to == m_problem.cycle - 1) return true;
     Relation relation{point(frames[1]), point(frames[0]), m_problem.cycle, {}};
@@ -91,7 +94,8 @@ class Builder {
       if (is_active(frame))
         for (const StopKey& stop : m_problem.frames[static_cast<std::size_t>(frame)].stops) {
           const auto station = static_cast<std::size_t>(stop.station);
-          if (include[station] && longest_slot(m_problem.stations[station].visits[static_cast<std::size_t>(stop.visit)], m_options[station]) < m_demands[static_cast<std::size_t>(frame)].width)
+          if (include[station] && longest_slot(m_problem.stations[station].visits[static_cast<std::size_t>(stop.visit)],
+                                               m_options[station]) < m_demands[static_cast<std::size_t>(frame)].width)
             return false;
         }
     return true;
@@ -114,12 +118,17 @@ class Builder {
   Relation relation_of(std::size_t index, const Visit& visit, int option) const {
     const CompiledStation& station = m_problem.stations[index];
     const bool fixed = m_roles[index] == Role::fixed;
-    Relation relation{fixed ? 0 : point(visit.frame), fixed ? point(visit.frame) : m_station_points[index], station.period, {}};
+    Relation relation{
+        fixed ? 0 : point(visit.frame), fixed ? point(visit.frame) : m_station_points[index], station.period, {}};
     for (const Slot& slot : visit.slots[static_cast<std::size_t>(option)]) {
       const Tick spare = slot.duration - m_demands[static_cast<std::size_t>(visit.frame)].width;
       if (spare < 0) continue;
-      if (slot.open) relation.arcs.push_back({0, station.period});
-      else relation.arcs.push_back({wrap(fixed ? station.fixed + slot.start - visit.shift : visit.shift - slot.start - spare, station.period), spare});
+      if (slot.open)
+        relation.arcs.push_back({0, station.period});
+      else
+        relation.arcs.push_back(
+            {wrap(fixed ? station.fixed + slot.start - visit.shift : visit.shift - slot.start - spare, station.period),
+             spare});
     }
     return relation;
   }
@@ -136,8 +145,8 @@ class Builder {
 
 }  // namespace
 
-Verdict decide(const Compiled& problem, const std::vector<int>& corridors, std::vector<BandDemand>& demands, const std::vector<std::vector<int>>& options,
-               std::int64_t& nodes) {
+Verdict decide(const Compiled& problem, const std::vector<int>& corridors, std::vector<BandDemand>& demands,
+               const std::vector<std::vector<int>>& options, std::int64_t& nodes) {
   Builder builder(problem, corridors, demands, options);
   if (!builder.build()) return Verdict::fails;
   if (builder.is_empty()) return Verdict::fits;
@@ -145,18 +154,23 @@ Verdict decide(const Compiled& problem, const std::vector<int>& corridors, std::
   const Verdict verdict = network.search(nodes);
   if (verdict != Verdict::fits) return verdict;
   for (std::size_t f = 0; f < demands.size(); ++f)
-    if (demands[f].active) demands[f].edge = wrap(network.positions()[static_cast<std::size_t>(builder.point_of_frame(f))], problem.cycle);
+    if (demands[f].active)
+      demands[f].edge = wrap(network.positions()[static_cast<std::size_t>(builder.point_of_frame(f))], problem.cycle);
   return verdict;
 }
 
-std::vector<Placed> place_all(const Compiled& problem, const std::vector<BandDemand>& demands, const std::vector<std::vector<int>>& options) {
+std::vector<Placed> place_all(const Compiled& problem, const std::vector<BandDemand>& demands,
+                              const std::vector<std::vector<int>>& options) {
   StationFit fit;
   std::vector<Placed> all;
   for (std::size_t s = 0; s < problem.stations.size(); ++s) {
     const CompiledStation& station = problem.stations[s];
-    const bool met = std::any_of(station.visits.begin(), station.visits.end(), [&](const Visit& v) { return demands[static_cast<std::size_t>(v.frame)].active; });
+    const bool met = std::any_of(station.visits.begin(), station.visits.end(),
+                                 [&](const Visit& v) { return demands[static_cast<std::size_t>(v.frame)].active; });
     if (!met) continue;
-    if (const auto placed = fit.fit(station, static_cast<int>(s), options[s], demands, {}, station.is_fixed, station.fixed)) all.push_back(*placed);
+    if (const auto placed =
+            fit.fit(station, static_cast<int>(s), options[s], demands, {}, station.is_fixed, station.fixed))
+      all.push_back(*placed);
   }
   return all;
 }

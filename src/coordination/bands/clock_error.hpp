@@ -5,12 +5,14 @@
 
 namespace entrain::bands {
 
-// A station's window in the platoon's frame: the band is [max left, min right]. All from one evaluation, on one line, not wrapped.
+// A station's window in the platoon's frame: the band is [max left, min right]. All from one evaluation, on one line,
+// not wrapped.
 struct FrameWindow {
   double left_s = 0, right_s = 0;
 };
 
-// Width that is left whatever the clocks do within +-error_s[v]: max(0, min(min_v (R_v - L_v), min_{i != j} [(R_i - e_i) - (L_j + e_j)])).
+// Width that is left whatever the clocks do within +-error_s[v]: max(0, min(min_v (R_v - L_v), min_{i != j} [(R_i -
+// e_i) - (L_j + e_j)])).
 double guaranteed_band(const std::vector<FrameWindow>& windows, const std::vector<double>& error_s);
 
 struct Bearable {

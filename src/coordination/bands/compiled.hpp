@@ -1,4 +1,5 @@
-// The checked problem in ticks: frames (one a direction), stations and their visits, windows merged and shortened by queue clearance.
+// The checked problem in ticks: frames (one a direction), stations and their visits, windows merged and shortened by
+// queue clearance.
 #pragma once
 
 #include <vector>
@@ -19,8 +20,8 @@ struct Slot {
 // One meeting of a direction with a station.
 struct Visit {
   int frame = 0, stop = 0;
-  Tick shift = 0;                         // travel from the direction's first stop, modulo the cycle
-  std::vector<std::vector<Slot>> slots;   // by option of the station
+  Tick shift = 0;                        // travel from the direction's first stop, modulo the cycle
+  std::vector<std::vector<Slot>> slots;  // by option of the station
 };
 
 struct CompiledStation {
@@ -28,7 +29,7 @@ struct CompiledStation {
   bool is_fixed = false;
   Tick fixed = 0;
   int option_count = 0;
-  std::vector<int> options;  // allowed, ascending
+  std::vector<int> options;   // allowed, ascending
   std::vector<Visit> visits;  // by frame, then stop
 };
 

@@ -23,7 +23,9 @@ const Visit* visit_of(const CompiledStation& station, int frame) {
 }
 
 // The part of [end - (length - width), end] where an offset serves a band of this width.
-Placed arc(int station, int option, Tick end, Tick spare, Tick period) { return {station, option, wrap(end - spare, period), spare}; }
+Placed arc(int station, int option, Tick end, Tick spare, Tick period) {
+  return {station, option, wrap(end - spare, period), spare};
+}
 
 }  // namespace
 
@@ -37,7 +39,8 @@ bool is_simple(const Compiled& problem, int corridor) {
   return true;
 }
 
-CorridorBands::CorridorBands(const Compiled& problem, int corridor, const std::vector<std::vector<int>>& options, const std::vector<bool>* include)
+CorridorBands::CorridorBands(const Compiled& problem, int corridor, const std::vector<std::vector<int>>& options,
+                             const std::vector<bool>* include)
     : m_problem(problem), m_corridor(corridor), m_options(options) {
   const auto& frames = problem.corridors[static_cast<std::size_t>(corridor)];
   m_two_way = frames.size() == 2;
@@ -55,7 +58,8 @@ CorridorBands::CorridorBands(const Compiled& problem, int corridor, const std::v
 void CorridorBands::prepare_shares() {
   if (!m_two_way) return;
   const auto& frames = m_problem.corridors[static_cast<std::size_t>(m_corridor)];
-  const double w0 = m_problem.frames[static_cast<std::size_t>(frames[0])].weight, w1 = m_problem.frames[static_cast<std::size_t>(frames[1])].weight;
+  const double w0 = m_problem.frames[static_cast<std::size_t>(frames[0])].weight,
+               w1 = m_problem.frames[static_cast<std::size_t>(frames[1])].weight;
   m_cap = m_narrowest = infinite;
   for (const CapGroup& group : m_cap_groups) m_cap = std::min(m_cap, limit(group.longest, 0, group.second ? w1 : w0));
   for (const Group& group : m_groups) {
@@ -108,8 +112,10 @@ void CorridorBands::add_station(int station, const std::vector<int>& options) {
   const auto& frames = m_problem.corridors[static_cast<std::size_t>(m_corridor)];
   const Visit* first = visit_of(compiled, frames[0]);
   const Visit* second = m_two_way ? visit_of(compiled, frames[1]) : nullptr;
-  if (first && second) add_pairs(station, *first, *second, options);
-  else add_caps(station, first ? *first : *second, first == nullptr, options);
+  if (first && second)
+    add_pairs(station, *first, *second, options);
+  else
+    add_caps(station, first ? *first : *second, first == nullptr, options);
 }
 
 void CorridorBands::add_pairs(int station, const Visit& first, const Visit& second, const std::vector<int>& options) {
@@ -118,7 +124,15 @@ void CorridorBands::add_pairs(int station, const Visit& first, const Visit& seco
   for (const int option : options)
     for (const Slot& a : first.slots[static_cast<std::size_t>(option)])
       for (const Slot& b : second.slots[static_cast<std::size_t>(option)]) {
-        Pair pair{0, a.duration + b.duration, a.duration, b.duration, first.shift - a.start, second.shift - b.start, option, a.open, b.open};
+        Pair pair{0,
+                  a.duration + b.duration,
+                  a.duration,
+                  b.duration,
+                  first.shift - a.start,
+                  second.shift - b.start,
+                  option,
+                  a.open,
+                  b.open};
         pair.c = wrap(pair.first_end - pair.second_end + b.duration, period);
         m_pairs.push_back(pair);
       }
@@ -126,7 +140,9 @@ void CorridorBands::add_pairs(int station, const Visit& first, const Visit& seco
 }
 
 void CorridorBands::add_caps(int station, const Visit& visit, bool second, const std::vector<int>& options) {
-  CapGroup group{station, second, m_problem.stations[static_cast<std::size_t>(station)].period, 0, static_cast<int>(m_caps.size()), 0};
+  CapGroup group{
+      station, second, m_problem.stations[static_cast<std::size_t>(station)].period, 0, static_cast<int>(m_caps.size()),
+      0};
   for (const int option : options)
     for (const Slot& slot : visit.slots[static_cast<std::size_t>(option)]) {
       m_caps.push_back({slot.duration, visit.shift - slot.start, option, slot.open});
@@ -142,9 +158,12 @@ bool CorridorBands::filter(double t, Widths base, double first_rate, double seco
   m_terms.clear();
   m_owner.clear();
   m_kept = 0;
-  const auto holds = [&](Tick g, Tick h) { return std::min(limit(g, base.first, first_rate), limit(h, base.second, second_rate)) >= t; };
+  const auto holds = [&](Tick g, Tick h) {
+    return std::min(limit(g, base.first, first_rate), limit(h, base.second, second_rate)) >= t;
+  };
   for (const CapGroup& group : m_cap_groups) {
-    const bool fits = group.second ? limit(group.longest, base.second, second_rate) >= t : limit(group.longest, base.first, first_rate) >= t;
+    const bool fits = group.second ? limit(group.longest, base.second, second_rate) >= t
+                                   : limit(group.longest, base.first, first_rate) >= t;
     if (!fits) return false;
   }
   for (const Group& group : m_groups) {
@@ -159,8 +178,11 @@ bool CorridorBands::filter(double t, Widths base, double first_rate, double seco
       m_terms.push_back({pair.c, pair.reserve});
     }
     if (!any) return false;
-    if (open) m_terms.resize(static_cast<std::size_t>(begin));
-    else m_sweep_stations.push_back({group.period, begin, static_cast<int>(m_terms.size())}), m_owner.push_back(group.station);
+    if (open)
+      m_terms.resize(static_cast<std::size_t>(begin));
+    else
+      m_sweep_stations.push_back({group.period, begin, static_cast<int>(m_terms.size())}),
+          m_owner.push_back(group.station);
   }
   return true;
 }
@@ -169,7 +191,8 @@ bool CorridorBands::filter(double t, Widths base, double first_rate, double seco
 double CorridorBands::climb(Widths base, double first_rate, double second_rate) {
   double cap = infinite;
   for (const CapGroup& group : m_cap_groups)
-    cap = std::min(cap, group.second ? limit(group.longest, base.second, second_rate) : limit(group.longest, base.first, first_rate));
+    cap = std::min(cap, group.second ? limit(group.longest, base.second, second_rate)
+                                     : limit(group.longest, base.first, first_rate));
   for (const Group& group : m_groups) {
     double best = -infinite;
     for (int p = group.begin; p < group.end; ++p) {
@@ -183,7 +206,8 @@ double CorridorBands::climb(Widths base, double first_rate, double second_rate) 
   double t = std::min(cap, (static_cast<double>(peak_of_filtered().value) - total) / rate);
   if (t < 0) return -1;
   const int kept = m_kept;
-  if (filter(t, base, first_rate, second_rate) && (m_kept == kept || static_cast<double>(peak_of_filtered().value) >= total + rate * t - 0.5))
+  if (filter(t, base, first_rate, second_rate) &&
+      (m_kept == kept || static_cast<double>(peak_of_filtered().value) >= total + rate * t - 0.5))
     return t;
   std::vector<double> limits;
   for (const Pair& pair : m_pairs) {
@@ -197,7 +221,8 @@ double CorridorBands::climb(Widths base, double first_rate, double second_rate) 
 double CorridorBands::search(std::vector<double>& limits, Widths base, double first_rate, double second_rate) {
   const double total = static_cast<double>(base.first + base.second), rate = first_rate + second_rate;
   const auto room_at = [&](double t) {
-    return filter(t, base, first_rate, second_rate) ? (static_cast<double>(peak_of_filtered().value) - total) / rate : -infinite;
+    return filter(t, base, first_rate, second_rate) ? (static_cast<double>(peak_of_filtered().value) - total) / rate
+                                                    : -infinite;
   };
   limits.push_back(0);
   std::sort(limits.begin(), limits.end());
@@ -205,8 +230,10 @@ double CorridorBands::search(std::vector<double>& limits, Widths base, double fi
   std::size_t fits = 0, fails = limits.size();  // limits[0] == 0 is known to fit
   while (fails - fits > 1) {
     const std::size_t middle = (fits + fails) / 2;
-    if (room_at(limits[middle]) >= limits[middle] - 0.25) fits = middle;
-    else fails = middle;
+    if (room_at(limits[middle]) >= limits[middle] - 0.25)
+      fits = middle;
+    else
+      fails = middle;
   }
   const double above = std::nextafter(limits[fits], infinite);
   const double reach = room_at(above);
@@ -235,7 +262,8 @@ Tick CorridorBands::widest(int direction) const {
   Tick width = m_problem.cycle;
   for (const StopKey& stop : m_problem.frames[static_cast<std::size_t>(frame)].stops) {
     const CompiledStation& station = m_problem.stations[static_cast<std::size_t>(stop.station)];
-    width = std::min(width, longest_slot(station.visits[static_cast<std::size_t>(stop.visit)], options_of(stop.station)));
+    width =
+        std::min(width, longest_slot(station.visits[static_cast<std::size_t>(stop.visit)], options_of(stop.station)));
   }
   return width;
 }
@@ -254,8 +282,10 @@ void CorridorBands::extend(CorridorOptimum& optimum) {
   const Widths base = optimum.widths;
   if (room(base).value > base.first + base.second) {
     const double first = climb(base, 1, 0), second = climb(base, 0, 1);
-    if (first > 0 && first >= second) optimum.widths = settle(first, base, 1, 0);
-    else if (second > 0) optimum.widths = settle(second, base, 0, 1);
+    if (first > 0 && first >= second)
+      optimum.widths = settle(first, base, 1, 0);
+    else if (second > 0)
+      optimum.widths = settle(second, base, 0, 1);
   }
   optimum.phi = room(optimum.widths).phi;
 }
@@ -294,9 +324,12 @@ bool CorridorBands::place_pair(const Group& group, const Widths& widths, Tick ph
     const Tick g = pair.g - widths.first, h = pair.h - widths.second;
     if (g < 0 || h < 0) continue;
     const Tick second_end = pair.second_end - widths.second - phi;
-    if (pair.first_open && pair.second_open) placed = {group.station, pair.option, 0, group.period};
-    else if (pair.first_open) placed = arc(group.station, pair.option, second_end, h, group.period);
-    else if (pair.second_open) placed = arc(group.station, pair.option, pair.first_end, g, group.period);
+    if (pair.first_open && pair.second_open)
+      placed = {group.station, pair.option, 0, group.period};
+    else if (pair.first_open)
+      placed = arc(group.station, pair.option, second_end, h, group.period);
+    else if (pair.second_open)
+      placed = arc(group.station, pair.option, pair.first_end, g, group.period);
     else {
       const Tick z = wrap(phi + pair.c, group.period);
       if (z > g + h) continue;
@@ -321,7 +354,8 @@ std::vector<Placed> CorridorBands::place(const CorridorOptimum& optimum) const {
     for (int i = group.begin; i < group.end; ++i) {
       const Cap& cap = m_caps[static_cast<std::size_t>(i)];
       if (cap.length < width) continue;
-      all.push_back(cap.open ? Placed{group.station, cap.option, 0, group.period} : arc(group.station, cap.option, edge + cap.end, cap.length - width, group.period));
+      all.push_back(cap.open ? Placed{group.station, cap.option, 0, group.period}
+                             : arc(group.station, cap.option, edge + cap.end, cap.length - width, group.period));
       break;
     }
   }
@@ -341,7 +375,9 @@ std::vector<Placed> CorridorBands::place_one(const CorridorOptimum& optimum) con
       for (const int option : options_of(index))
         for (const Slot& slot : visit->slots[static_cast<std::size_t>(option)])
           if (slot.duration >= width) {
-            all.push_back(slot.open ? Placed{index, option, 0, station.period} : arc(index, option, visit->shift - slot.start, slot.duration - width, station.period));
+            all.push_back(slot.open
+                              ? Placed{index, option, 0, station.period}
+                              : arc(index, option, visit->shift - slot.start, slot.duration - width, station.period));
             return;
           }
     all.push_back({index, options_of(index).front(), 0, station.period});
@@ -357,11 +393,14 @@ void CorridorBands::add_witness(const Widths& widths, bool both, std::vector<int
   for (const CapGroup& group : m_cap_groups)
     if (group.longest < (group.second ? widths.second : widths.first)) return found.push_back(group.station);
   for (const Group& group : m_groups) {
-    const bool fits = std::any_of(m_pairs.begin() + group.begin, m_pairs.begin() + group.end, [&](const Pair& p) { return p.g >= widths.first && p.h >= widths.second; });
+    const bool fits = std::any_of(m_pairs.begin() + group.begin, m_pairs.begin() + group.end,
+                                  [&](const Pair& p) { return p.g >= widths.first && p.h >= widths.second; });
     if (!fits) return found.push_back(group.station);
   }
   if (!both || !filter(0, widths, 0, 0)) return;
-  for (const int blocker : m_sweep.blockers(m_sweep_stations, m_terms, m_problem.cycle, widths.first + widths.second - 1)) found.push_back(m_owner[static_cast<std::size_t>(blocker)]);
+  for (const int blocker :
+       m_sweep.blockers(m_sweep_stations, m_terms, m_problem.cycle, widths.first + widths.second - 1))
+    found.push_back(m_owner[static_cast<std::size_t>(blocker)]);
 }
 
 std::vector<int> CorridorBands::witness(const CorridorOptimum& optimum) {
@@ -370,8 +409,11 @@ std::vector<int> CorridorBands::witness(const CorridorOptimum& optimum) {
   const bool both = m_two_way && optimum.all_directions;
   if (both) {
     const auto& frames = m_problem.corridors[static_cast<std::size_t>(m_corridor)];
-    const double w0 = m_problem.frames[static_cast<std::size_t>(frames[0])].weight, w1 = m_problem.frames[static_cast<std::size_t>(frames[1])].weight;
-    const auto more = [&](double weight) { return weight > 0 ? static_cast<Tick>(std::floor(weight * optimum.share + 0.25)) + 1 : 0; };
+    const double w0 = m_problem.frames[static_cast<std::size_t>(frames[0])].weight,
+                 w1 = m_problem.frames[static_cast<std::size_t>(frames[1])].weight;
+    const auto more = [&](double weight) {
+      return weight > 0 ? static_cast<Tick>(std::floor(weight * optimum.share + 0.25)) + 1 : 0;
+    };
     add_witness({more(w0), more(w1)}, w0 > 0 && w1 > 0, found);
   }
   if (both || optimum.single == 0) add_witness({base.first + 1, base.second}, both, found);
@@ -392,20 +434,25 @@ std::vector<CorridorBands::PhiArc> CorridorBands::fitting(const Widths& widths) 
       if (g < 0 || h < 0) continue;
       open = open || pair.first_open || pair.second_open;
       if (g + h >= group.period) open = true;
-      for (Tick from = -pair.c - group.period; from < m_problem.cycle; from += group.period) own.push_back({std::max(Tick{0}, from), std::min(m_problem.cycle - 1, from + g + h)});
+      for (Tick from = -pair.c - group.period; from < m_problem.cycle; from += group.period)
+        own.push_back({std::max(Tick{0}, from), std::min(m_problem.cycle - 1, from + g + h)});
     }
     if (open) continue;
     std::erase_if(own, [](const PhiArc& a) { return a.to < a.from; });
     std::sort(own.begin(), own.end(), [](const PhiArc& a, const PhiArc& b) { return a.from < b.from; });
     std::vector<PhiArc> merged, both;
     for (const PhiArc& a : own)
-      if (!merged.empty() && a.from <= merged.back().to + 1) merged.back().to = std::max(merged.back().to, a.to);
-      else merged.push_back(a);
+      if (!merged.empty() && a.from <= merged.back().to + 1)
+        merged.back().to = std::max(merged.back().to, a.to);
+      else
+        merged.push_back(a);
     for (std::size_t i = 0, j = 0; i < fits.size() && j < merged.size();) {
       const PhiArc common{std::max(fits[i].from, merged[j].from), std::min(fits[i].to, merged[j].to)};
       if (common.from <= common.to) both.push_back(common);
-      if (fits[i].to < merged[j].to) ++i;
-      else ++j;
+      if (fits[i].to < merged[j].to)
+        ++i;
+      else
+        ++j;
     }
     fits = std::move(both);
   }

@@ -25,7 +25,7 @@ struct CorridorOptimum {
   double share = 0;  // ticks per weight
   Tick phi = 0;      // first leading edge minus second trailing edge
   bool all_directions = true;
-  int single = 0;    // the direction that has its band where not all have
+  int single = 0;  // the direction that has its band where not all have
 };
 
 // True where no direction meets a station twice: then the sweep decides everything.
@@ -33,8 +33,10 @@ bool is_simple(const Compiled& problem, int corridor);
 
 class CorridorBands {
  public:
-  // `options`: allowed options by station. `include`: stations to look at, by station; null: all that the corridor meets.
-  CorridorBands(const Compiled& problem, int corridor, const std::vector<std::vector<int>>& options, const std::vector<bool>* include = nullptr);
+  // `options`: allowed options by station. `include`: stations to look at, by station; null: all that the corridor
+  // meets.
+  CorridorBands(const Compiled& problem, int corridor, const std::vector<std::vector<int>>& options,
+                const std::vector<bool>* include = nullptr);
 
   CorridorOptimum best();
   // The largest sum the windows leave at any phi for bands at least so wide; -unlimited if a window is too short.
@@ -45,7 +47,9 @@ class CorridorBands {
   std::vector<int> witness(const CorridorOptimum& optimum);
 
   // Arcs of phi at which bands of these widths fit, in [0, cycle), as closed intervals [from, to], ascending.
-  struct PhiArc { Tick from = 0, to = 0; };
+  struct PhiArc {
+    Tick from = 0, to = 0;
+  };
   std::vector<PhiArc> fitting(const Widths& widths) const;
 
  private:
@@ -102,9 +106,10 @@ class CorridorBands {
   std::vector<SweepTerm> m_terms;
   std::vector<SweepStation> m_all_stations;  // of all pairs
   std::vector<SweepTerm> m_all_terms;
-  double m_cap = 0, m_narrowest = 0;  // shares at which the first station has no pair left, at which the first pair drops out
-  bool m_complete = false;            // every station has a pair
-  int m_kept = 0;  // pairs the last filter kept, also those of stations that leave phi free
+  double m_cap = 0,
+         m_narrowest = 0;    // shares at which the first station has no pair left, at which the first pair drops out
+  bool m_complete = false;   // every station has a pair
+  int m_kept = 0;            // pairs the last filter kept, also those of stations that leave phi free
   std::vector<int> m_owner;  // station of each sweep station
   Sweep m_sweep;
 };

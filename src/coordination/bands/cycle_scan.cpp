@@ -51,7 +51,8 @@ class CycleScan {
         for (const Slot& b : compiled.visits[1].slots[static_cast<std::size_t>(o)])
           m_pairs.push_back({static_cast<double>(a.duration) * scale, static_cast<double>(b.duration) * scale,
                              static_cast<double>(b.start + b.duration - a.start) * scale, a.open, b.open});
-    m_stations.push_back({travel_s, to_ticks(station.forward_clearance_s), to_ticks(station.backward_clearance_s), station.half_period, begin, static_cast<int>(m_pairs.size())});
+    m_stations.push_back({travel_s, to_ticks(station.forward_clearance_s), to_ticks(station.backward_clearance_s),
+                          station.half_period, begin, static_cast<int>(m_pairs.size())});
   }
 
   // The peak over all pairs of windows; false where a pair too narrow for the share may have made it.
@@ -65,7 +66,8 @@ class CycleScan {
       cap = std::min(cap, best);
     }
     const Peak peak = m_sweep.highest(m_sweep_stations, m_terms, cycle);
-    const double t = std::min(cap, static_cast<double>(peak.value) / (m_input.forward_weight + m_input.backward_weight));
+    const double t =
+        std::min(cap, static_cast<double>(peak.value) / (m_input.forward_weight + m_input.backward_weight));
     share = std::max(0.0, t / static_cast<double>(ticks_per_second));
     return t <= narrowest || t <= 0;
   }
@@ -87,15 +89,20 @@ class CycleScan {
       any = true;
       open = open || pair.first_open || pair.second_open;
       // Clearance moves the forward start; the backward end stays.
-      Tick c = shift + static_cast<Tick>(pair.phase * length + 0.5 * (pair.phase < 0 ? -1 : 1)) - (pair.first_open ? 0 : station.first_clearance);
+      Tick c = shift + static_cast<Tick>(pair.phase * length + 0.5 * (pair.phase < 0 ? -1 : 1)) -
+               (pair.first_open ? 0 : station.first_clearance);
       m_terms.push_back({wrap(c, period), g + h});
     }
-    if (open) m_terms.resize(static_cast<std::size_t>(begin));
-    else if (any) m_sweep_stations.push_back({period, begin, static_cast<int>(m_terms.size())});
+    if (open)
+      m_terms.resize(static_cast<std::size_t>(begin));
+    else if (any)
+      m_sweep_stations.push_back({period, begin, static_cast<int>(m_terms.size())});
     return any;
   }
 
-  static double limit(Tick length, double weight) { return weight == 1 ? static_cast<double>(length) : static_cast<double>(length) / weight; }
+  static double limit(Tick length, double weight) {
+    return weight == 1 ? static_cast<double>(length) : static_cast<double>(length) / weight;
+  }
 
   double careful(double cycle_s) const {
     TwoWayInput scaled = m_input;
@@ -105,7 +112,8 @@ class CycleScan {
       station.fixed_offset_s.reset();
       for (StationOption& option : station.options)
         for (auto* windows : {&option.forward, &option.backward})
-          for (Window& window : *windows) window.start_s *= scale, window.duration_s = std::min(cycle_s, window.duration_s * scale);
+          for (Window& window : *windows)
+            window.start_s *= scale, window.duration_s = std::min(cycle_s, window.duration_s * scale);
     }
     const auto answer = solve_two_way(scaled);
     return answer ? answer->corridors[0].share_s : 0;
@@ -122,11 +130,14 @@ class CycleScan {
 Diagnostics check_steps(const TwoWayInput& input, const CycleSteps& steps) {
   Diagnostics found;
   if (!(steps.from_s > 0) || !(steps.to_s >= steps.from_s) || !(steps.to_s <= 100'000.0))
-    found.push_back(error("cycle range", "from and to", "0 < from <= to <= 100000 s", "Give the shortest and the longest cycle."));
+    found.push_back(
+        error("cycle range", "from and to", "0 < from <= to <= 100000 s", "Give the shortest and the longest cycle."));
   if (!(steps.step_s > 0) || (steps.to_s - steps.from_s) / steps.step_s > most_steps)
-    found.push_back(error("cycle range, step", "a step too small", "above 0 and at most a million steps", "Give a larger step."));
+    found.push_back(
+        error("cycle range, step", "a step too small", "above 0 and at most a million steps", "Give a larger step."));
   if (input.one_way || !(input.forward_weight > 0) || !(input.backward_weight > 0))
-    found.push_back(error("weights", "a direction that does not count", "two directions with weights above 0", "Scan two-way corridors only."));
+    found.push_back(error("weights", "a direction that does not count", "two directions with weights above 0",
+                          "Scan two-way corridors only."));
   return found;
 }
 
@@ -136,7 +147,8 @@ Result<std::vector<CycleShare>> scan_cycles(const TwoWayInput& input, const Cycl
   Diagnostics found = check_steps(input, steps);
   append(found, check_lengths(input));
   TwoWayInput bare = input;  // windows merged, nothing cleared yet
-  for (TwoWayStation& station : bare.stations) station.forward_clearance_s = station.backward_clearance_s = 0, station.fixed_offset_s.reset();
+  for (TwoWayStation& station : bare.stations)
+    station.forward_clearance_s = station.backward_clearance_s = 0, station.fixed_offset_s.reset();
   const Result<Compiled> compiled = compile(to_problem(bare));
   append(found, check(to_problem(input)));
   if (!compiled && found.empty()) found = compiled.error();

@@ -15,8 +15,9 @@ struct CycleShare {
   double share_s = 0;  // least of width / weight; 0: no band in every direction at once
 };
 
-// Ascending, both ends included where the step meets them. Windows are scaled by cycle / input.cycle_s; travel times and queue clearances
-// stay as they are. Fixed offsets are not looked at (they belong to one cycle); fixed options are. Two-way inputs only; exact.
+// Ascending, both ends included where the step meets them. Windows are scaled by cycle / input.cycle_s; travel times
+// and queue clearances stay as they are. Fixed offsets are not looked at (they belong to one cycle); fixed options are.
+// Two-way inputs only; exact.
 [[nodiscard]] Result<std::vector<CycleShare>> scan_cycles(const TwoWayInput& input, const CycleSteps& steps);
 
 }  // namespace entrain::bands

@@ -12,7 +12,8 @@ void StationFit::add_common(std::vector<Piece>& to, const Piece& a, const Piece&
 }
 
 // Keeps the offsets that also serve this visit; false if none is left.
-bool StationFit::meet(const CompiledStation& station, const Visit& visit, int option, const BandDemand& demand, const Grid& grid) {
+bool StationFit::meet(const CompiledStation& station, const Visit& visit, int option, const BandDemand& demand,
+                      const Grid& grid) {
   m_next.clear();
   for (const Slot& slot : visit.slots[static_cast<std::size_t>(option)]) {
     const Tick spare = slot.duration - demand.width;
@@ -31,11 +32,14 @@ bool StationFit::meet(const CompiledStation& station, const Visit& visit, int op
   return !m_pieces.empty();
 }
 
-std::optional<Placed> StationFit::fit(const CompiledStation& station, int index, const std::vector<int>& options, const std::vector<BandDemand>& demands, const Grid& grid,
-                                      bool is_fixed, Tick fixed) {
+std::optional<Placed> StationFit::fit(const CompiledStation& station, int index, const std::vector<int>& options,
+                                      const std::vector<BandDemand>& demands, const Grid& grid, bool is_fixed,
+                                      Tick fixed) {
   for (const int option : options) {
-    if (is_fixed) m_pieces.assign(1, {fixed, 0});
-    else m_pieces.assign(1, {grid.origin, station.period});
+    if (is_fixed)
+      m_pieces.assign(1, {fixed, 0});
+    else
+      m_pieces.assign(1, {grid.origin, station.period});
     Grid used = grid;
     if (is_fixed) used.whole_seconds = false;
     const bool fits = std::all_of(station.visits.begin(), station.visits.end(), [&](const Visit& visit) {
@@ -43,7 +47,8 @@ std::optional<Placed> StationFit::fit(const CompiledStation& station, int index,
       return !demand.active || meet(station, visit, option, demand, used);
     });
     if (!fits) continue;
-    const auto longest = std::max_element(m_pieces.begin(), m_pieces.end(), [](const Piece& a, const Piece& b) { return a.length < b.length; });
+    const auto longest = std::max_element(m_pieces.begin(), m_pieces.end(),
+                                          [](const Piece& a, const Piece& b) { return a.length < b.length; });
     return Placed{index, option, wrap(longest->from, station.period), longest->length};
   }
   return std::nullopt;

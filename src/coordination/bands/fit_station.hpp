@@ -23,12 +23,15 @@ struct Grid {
 
 class StationFit {
  public:
-  // The arc of offsets that serves every band, for the first option that has one (its longest arc, then the earliest in the list).
-  // `is_fixed`: only `fixed` itself. The station's period is a multiple of the grid.
-  std::optional<Placed> fit(const CompiledStation& station, int index, const std::vector<int>& options, const std::vector<BandDemand>& demands, const Grid& grid, bool is_fixed, Tick fixed);
+  // The arc of offsets that serves every band, for the first option that has one (its longest arc, then the earliest in
+  // the list). `is_fixed`: only `fixed` itself. The station's period is a multiple of the grid.
+  std::optional<Placed> fit(const CompiledStation& station, int index, const std::vector<int>& options,
+                            const std::vector<BandDemand>& demands, const Grid& grid, bool is_fixed, Tick fixed);
 
  private:
-  struct Piece { Tick from = 0, length = 0; };
+  struct Piece {
+    Tick from = 0, length = 0;
+  };
   bool meet(const CompiledStation& station, const Visit& visit, int option, const BandDemand& demand, const Grid& grid);
   static void add_common(std::vector<Piece>& to, const Piece& a, const Piece& b, Tick period);
 

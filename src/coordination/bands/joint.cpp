@@ -10,7 +10,9 @@ namespace {
 
 class Disjoint {
  public:
-  explicit Disjoint(std::size_t count) : m_parent(count) { std::iota(m_parent.begin(), m_parent.end(), std::size_t{0}); }
+  explicit Disjoint(std::size_t count) : m_parent(count) {
+    std::iota(m_parent.begin(), m_parent.end(), std::size_t{0});
+  }
   std::size_t root(std::size_t i) {
     while (m_parent[i] != i) i = m_parent[i] = m_parent[m_parent[i]];
     return i;
@@ -28,7 +30,8 @@ class Disjoint {
 
 std::vector<int> corridors_of(const Compiled& problem, const CompiledStation& station) {
   std::vector<int> met;
-  for (const Visit& visit : station.visits) met.push_back(problem.frames[static_cast<std::size_t>(visit.frame)].corridor);
+  for (const Visit& visit : station.visits)
+    met.push_back(problem.frames[static_cast<std::size_t>(visit.frame)].corridor);
   std::sort(met.begin(), met.end());
   met.erase(std::unique(met.begin(), met.end()), met.end());
   return met;
@@ -36,7 +39,8 @@ std::vector<int> corridors_of(const Compiled& problem, const CompiledStation& st
 
 class Solver {
  public:
-  Solver(const Compiled& problem, std::int64_t most_nodes, bool whole_seconds) : m_problem(problem), m_most_nodes(most_nodes), m_whole_seconds(whole_seconds) {}
+  Solver(const Compiled& problem, std::int64_t most_nodes, bool whole_seconds)
+      : m_problem(problem), m_most_nodes(most_nodes), m_whole_seconds(whole_seconds) {}
 
   JointSetting run() {
     const OptionLists options = allowed_options(m_problem);
@@ -52,9 +56,12 @@ class Solver {
       m_out.proved = m_out.proved && m_out.own.back().proved;
     }
     for (const std::vector<int>& corridors : components_of(m_problem)) {
-      if (corridors.size() == 1) settle_forest(corridors, m_out.own, options);
-      else if (is_forest(m_problem, corridors)) solve_forest(corridors);
-      else solve_rings(corridors);
+      if (corridors.size() == 1)
+        settle_forest(corridors, m_out.own, options);
+      else if (is_forest(m_problem, corridors))
+        solve_forest(corridors);
+      else
+        solve_rings(corridors);
     }
     start_at_zero();
     return m_out;
@@ -110,13 +117,16 @@ class Solver {
     while (std::find(done.begin(), done.end(), false) != done.end()) put(next_shape(shapes, placed, done));
   }
 
-  static std::size_t next_shape(const std::vector<Alone>& shapes, const std::vector<bool>& placed, const std::vector<bool>& done) {
+  static std::size_t next_shape(const std::vector<Alone>& shapes, const std::vector<bool>& placed,
+                                const std::vector<bool>& done) {
     std::size_t first = shapes.size();
     for (std::size_t i = 0; i < shapes.size(); ++i) {
       if (done[i]) continue;
       first = std::min(first, i);
       const auto& all = shapes[i].placed;
-      if (std::any_of(all.begin(), all.end(), [&](const Placed& p) { return placed[static_cast<std::size_t>(p.station)]; })) return i;
+      if (std::any_of(all.begin(), all.end(),
+                      [&](const Placed& p) { return placed[static_cast<std::size_t>(p.station)]; }))
+        return i;
     }
     return first;
   }
@@ -132,7 +142,8 @@ class Solver {
       const auto station = static_cast<std::size_t>(p.station);
       if (!placed[station]) continue;
       const Tick shift = m_out.setting.offsets[station] - middle(p);
-      for (Placed& moving : shape.placed) moving.from = wrap(moving.from + shift, m_problem.stations[static_cast<std::size_t>(moving.station)].period);
+      for (Placed& moving : shape.placed)
+        moving.from = wrap(moving.from + shift, m_problem.stations[static_cast<std::size_t>(moving.station)].period);
       return;
     }
   }
@@ -140,7 +151,8 @@ class Solver {
   void solve_rings(const std::vector<int>& corridors) {
     // Whole seconds where the cycle allows them, else an even number of steps a cycle.
     const bool seconds = m_problem.cycle % (2 * ticks_per_second) == 0;
-    const Setting known = search_ring(m_problem, corridors, m_out.own, m_out.setting, seconds ? ticks_per_second : m_problem.cycle / 120);
+    const Setting known =
+        search_ring(m_problem, corridors, m_out.own, m_out.setting, seconds ? ticks_per_second : m_problem.cycle / 120);
     const RingAnswer ring = solve_ring(m_problem, corridors, m_out.own, known, m_most_nodes);
     m_out.proved = m_out.proved && ring.proved;
     m_out.least_ratio_bound = std::min(m_out.least_ratio_bound, ring.least_ratio_bound);
@@ -152,13 +164,16 @@ class Solver {
     for (const int c : corridors) {  // unproved: what each has alone stays the bound
       if (!ring.proved) break;
       const auto& frames = m_problem.corridors[static_cast<std::size_t>(c)];
-      m_out.bound[static_cast<std::size_t>(c)] = {ring.demands[static_cast<std::size_t>(frames[0])].width,
-                                                  frames.size() > 1 ? ring.demands[static_cast<std::size_t>(frames[1])].width : 0};
+      m_out.bound[static_cast<std::size_t>(c)] = {
+          ring.demands[static_cast<std::size_t>(frames[0])].width,
+          frames.size() > 1 ? ring.demands[static_cast<std::size_t>(frames[1])].width : 0};
     }
     if (!m_whole_seconds) return;
     m_out.setting = round_ring(m_problem, corridors, m_out.own, m_out.setting);
     const Setting other = round_ring(m_problem, corridors, m_out.own, known);
-    const auto worth = [&](const Setting& setting) { return worth_of(m_problem, corridors, m_out.own, measure_all(m_problem, setting)); };
+    const auto worth = [&](const Setting& setting) {
+      return worth_of(m_problem, corridors, m_out.own, measure_all(m_problem, setting));
+    };
     if (worth(m_out.setting) < worth(other)) m_out.setting = other;
   }
 
@@ -168,8 +183,10 @@ class Solver {
       bool fixed = false;
       for (const int c : corridors) fixed = fixed || fixed_count(m_problem, c) > 0;
       if (fixed) continue;
-      const auto first_frame = static_cast<std::size_t>(m_problem.corridors[static_cast<std::size_t>(corridors.front())].front());
-      const Tick shift = m_out.setting.offsets[static_cast<std::size_t>(m_problem.frames[first_frame].stops.front().station)];
+      const auto first_frame =
+          static_cast<std::size_t>(m_problem.corridors[static_cast<std::size_t>(corridors.front())].front());
+      const Tick shift =
+          m_out.setting.offsets[static_cast<std::size_t>(m_problem.frames[first_frame].stops.front().station)];
       std::vector<int> met;
       for (const int c : corridors)
         for (const int station : stations_of(m_problem, c)) met.push_back(station);
@@ -196,7 +213,8 @@ std::vector<std::vector<int>> components_of(const Compiled& problem) {
   Disjoint sets(problem.corridors.size());
   for (const CompiledStation& station : problem.stations) {
     const std::vector<int> met = corridors_of(problem, station);
-    for (std::size_t i = 1; i < met.size(); ++i) sets.join(static_cast<std::size_t>(met[0]), static_cast<std::size_t>(met[i]));
+    for (std::size_t i = 1; i < met.size(); ++i)
+      sets.join(static_cast<std::size_t>(met[0]), static_cast<std::size_t>(met[i]));
   }
   std::vector<std::vector<int>> lists(problem.corridors.size());
   for (std::size_t c = 0; c < problem.corridors.size(); ++c) lists[sets.root(c)].push_back(static_cast<int>(c));
@@ -219,6 +237,8 @@ bool is_forest(const Compiled& problem, const std::vector<int>& corridors) {
   return true;
 }
 
-JointSetting solve_all(const Compiled& problem, std::int64_t most_nodes, bool whole_seconds) { return Solver(problem, most_nodes, whole_seconds).run(); }
+JointSetting solve_all(const Compiled& problem, std::int64_t most_nodes, bool whole_seconds) {
+  return Solver(problem, most_nodes, whole_seconds).run();
+}
 
 }  // namespace entrain::bands

@@ -3,19 +3,21 @@
 #include <algorithm>
 #include <limits>
 
-
 namespace entrain::bands {
 namespace {
 
 const std::vector<Slot>& slots_of(const Compiled& problem, const StopKey& stop, const Setting& setting) {
   const auto station = static_cast<std::size_t>(stop.station);
-  return problem.stations[station].visits[static_cast<std::size_t>(stop.visit)].slots[static_cast<std::size_t>(setting.options[station])];
+  return problem.stations[station]
+      .visits[static_cast<std::size_t>(stop.visit)]
+      .slots[static_cast<std::size_t>(setting.options[station])];
 }
 
 // When the slot opens, seen from the first stop.
 Tick opening(const Compiled& problem, const StopKey& stop, const Slot& slot, const Setting& setting) {
   const auto station = static_cast<std::size_t>(stop.station);
-  return setting.offsets[station] + slot.start - problem.stations[station].visits[static_cast<std::size_t>(stop.visit)].shift;
+  return setting.offsets[station] + slot.start -
+         problem.stations[station].visits[static_cast<std::size_t>(stop.visit)].shift;
 }
 
 // Edges of the band's windows around the band, leading edge at 0: the band is [max left, min right].
@@ -28,9 +30,12 @@ struct Edges {
 class Extreme {
  public:
   void add(int station, Tick value) {
-    if (station == m_station) m_first = std::max(m_first, value);
-    else if (value > m_first) m_second = m_first, m_first = value, m_station = station;
-    else m_second = std::max(m_second, value);
+    if (station == m_station)
+      m_first = std::max(m_first, value);
+    else if (value > m_first)
+      m_second = m_first, m_first = value, m_station = station;
+    else
+      m_second = std::max(m_second, value);
   }
   Tick without(int station) const { return station == m_station ? m_second : m_first; }
 
@@ -60,8 +65,10 @@ class Describer {
  private:
   StationAnswer station_answer(std::size_t index) const {
     const Tick period = m_problem.stations[index].period;
-    StationAnswer answer{m_setting.options[index], to_seconds(m_setting.offsets[index]), to_seconds(period), to_seconds(period), 0, 0};
-    if (m_early[index] + 0 < period) answer.early_s = to_seconds(m_early[index]), answer.early_loss = m_early_loss[index];
+    StationAnswer answer{
+        m_setting.options[index], to_seconds(m_setting.offsets[index]), to_seconds(period), to_seconds(period), 0, 0};
+    if (m_early[index] + 0 < period)
+      answer.early_s = to_seconds(m_early[index]), answer.early_loss = m_early_loss[index];
     if (m_late[index] < period) answer.late_s = to_seconds(m_late[index]), answer.late_loss = m_late_loss[index];
     return answer;
   }
@@ -76,11 +83,13 @@ class Describer {
     std::vector<Edges> edges;
     for (std::size_t s = 0; s < frame.stops.size(); ++s) {
       Tick longest = 0;
-      for (const Slot& slot : slots_of(m_problem, frame.stops[s], m_setting)) longest = std::max(longest, slot.duration);
+      for (const Slot& slot : slots_of(m_problem, frame.stops[s], m_setting))
+        longest = std::max(longest, slot.duration);
       least = std::min(least, longest);
       answer.stops.push_back(band.width > 0 ? stop_answer(frame.stops[s], band, edges) : StopAnswer{});
       const StopAnswer& stop = answer.stops.back();
-      if (stop.window >= 0 && !stop.always_open && (edges.back().left == 0 || edges.back().right == band.width)) answer.pinching.push_back(static_cast<int>(s));
+      if (stop.window >= 0 && !stop.always_open && (edges.back().left == 0 || edges.back().right == band.width))
+        answer.pinching.push_back(static_cast<int>(s));
     }
     answer.least_window_s = to_seconds(least);
     if (band.width > 0) limit_freedom(edges, band.width);
@@ -106,7 +115,8 @@ class Describer {
     std::sort(own.begin(), own.end(), [](const Edges& a, const Edges& b) { return a.station < b.station; });
     for (std::size_t i = 0; i < own.size();) {
       Edges all = own[i];
-      for (++i; i < own.size() && own[i].station == all.station; ++i) all.left = std::max(all.left, own[i].left), all.right = std::min(all.right, own[i].right);
+      for (++i; i < own.size() && own[i].station == all.station; ++i)
+        all.left = std::max(all.left, own[i].left), all.right = std::min(all.right, own[i].right);
       const auto station = static_cast<std::size_t>(all.station);
       narrow(m_early[station], m_early_loss[station], all.right - left.without(all.station) - width);
       narrow(m_late[station], m_late_loss[station], -right.without(all.station) - all.left - width);
@@ -114,8 +124,10 @@ class Describer {
   }
 
   static void narrow(Tick& range, double& loss, Tick limit) {
-    if (limit < range) range = limit, loss = 1;
-    else if (limit == range) loss += 1;
+    if (limit < range)
+      range = limit, loss = 1;
+    else if (limit == range)
+      loss += 1;
   }
 
   const Compiled& m_problem;
@@ -136,7 +148,8 @@ FrameBand Measure::operator()(const Compiled& problem, int frame, const Setting&
     if (slots.empty()) return {};
     if (slots.front().open) continue;
     const int begin = static_cast<int>(m_terms.size());
-    for (const Slot& slot : slots) m_terms.push_back({wrap(-opening(problem, stop, slot, setting), period), slot.duration});
+    for (const Slot& slot : slots)
+      m_terms.push_back({wrap(-opening(problem, stop, slot, setting), period), slot.duration});
     m_stations.push_back({period, begin, static_cast<int>(m_terms.size())});
   }
   const Peak peak = m_sweep.highest(m_stations, m_terms, problem.cycle);
@@ -144,11 +157,14 @@ FrameBand Measure::operator()(const Compiled& problem, int frame, const Setting&
   return {std::min(peak.value, problem.cycle), peak.phi};
 }
 
-FrameBand measure(const Compiled& problem, int frame, const Setting& setting) { return Measure()(problem, frame, setting); }
+FrameBand measure(const Compiled& problem, int frame, const Setting& setting) {
+  return Measure()(problem, frame, setting);
+}
 
 std::vector<FrameBand> measure_all(const Compiled& problem, const Setting& setting) {
   std::vector<FrameBand> bands;
-  for (std::size_t f = 0; f < problem.frames.size(); ++f) bands.push_back(measure(problem, static_cast<int>(f), setting));
+  for (std::size_t f = 0; f < problem.frames.size(); ++f)
+    bands.push_back(measure(problem, static_cast<int>(f), setting));
   return bands;
 }
 

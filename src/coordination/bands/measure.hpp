@@ -9,8 +9,8 @@
 namespace entrain::bands {
 
 struct Setting {
-  std::vector<int> options;    // by station
-  std::vector<Tick> offsets;   // by station, in [0, period)
+  std::vector<int> options;   // by station
+  std::vector<Tick> offsets;  // by station, in [0, period)
 };
 
 struct FrameBand {
@@ -31,7 +31,8 @@ class Measure {
 FrameBand measure(const Compiled& problem, int frame, const Setting& setting);
 std::vector<FrameBand> measure_all(const Compiled& problem, const Setting& setting);
 
-// Widths, edges, slacks, pinching stops and freedom of the setting; bounds, shares and witnesses are left for the caller.
+// Widths, edges, slacks, pinching stops and freedom of the setting; bounds, shares and witnesses are left for the
+// caller.
 Answer describe(const Compiled& problem, const Setting& setting);
 
 // min of width / weight in ticks over the corridor's directions with a weight.

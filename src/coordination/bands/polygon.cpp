@@ -6,14 +6,19 @@
 namespace entrain::bands {
 namespace {
 
-double turn(const Corner& o, const Corner& a, const Corner& b) { return (a.x - o.x) * (b.y - o.y) - (a.y - o.y) * (b.x - o.x); }
+double turn(const Corner& o, const Corner& a, const Corner& b) {
+  return (a.x - o.x) * (b.y - o.y) - (a.y - o.y) * (b.x - o.x);
+}
 
 }  // namespace
 
 // Monotone chain (Andrew 1979).
 Polygon hull(std::vector<Corner> corners) {
-  std::sort(corners.begin(), corners.end(), [](const Corner& a, const Corner& b) { return a.x != b.x ? a.x < b.x : a.y < b.y; });
-  corners.erase(std::unique(corners.begin(), corners.end(), [](const Corner& a, const Corner& b) { return a.x == b.x && a.y == b.y; }), corners.end());
+  std::sort(corners.begin(), corners.end(),
+            [](const Corner& a, const Corner& b) { return a.x != b.x ? a.x < b.x : a.y < b.y; });
+  corners.erase(std::unique(corners.begin(), corners.end(),
+                            [](const Corner& a, const Corner& b) { return a.x == b.x && a.y == b.y; }),
+                corners.end());
   if (corners.size() < 3) return corners;
   Polygon out(2 * corners.size());
   std::size_t k = 0;

@@ -11,8 +11,14 @@ constexpr int most_rounds = 40;
 
 class RingSearch {
  public:
-  RingSearch(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, Setting setting, Tick step)
-      : m_problem(problem), m_corridors(corridors), m_own(own), m_setting(std::move(setting)), m_step(step), m_bands(measure_all(problem, m_setting)),
+  RingSearch(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, Setting setting,
+             Tick step)
+      : m_problem(problem),
+        m_corridors(corridors),
+        m_own(own),
+        m_setting(std::move(setting)),
+        m_step(step),
+        m_bands(measure_all(problem, m_setting)),
         m_worth(worth_of(problem, corridors, own, m_bands)) {
     for (const int c : corridors)
       for (const int s : stations_of(problem, c)) m_free.push_back(s);
@@ -41,7 +47,8 @@ class RingSearch {
     for (const Visit& visit : station.visits) m_saved.push_back(m_bands[static_cast<std::size_t>(visit.frame)]);
     m_setting.options[s] = option;
     m_setting.offsets[s] = wrap(offset, station.period);
-    for (const Visit& visit : station.visits) m_bands[static_cast<std::size_t>(visit.frame)] = m_measure(m_problem, visit.frame, m_setting);
+    for (const Visit& visit : station.visits)
+      m_bands[static_cast<std::size_t>(visit.frame)] = m_measure(m_problem, visit.frame, m_setting);
     Worth now = worth_of(m_problem, m_corridors, m_own, m_bands);
     if (m_worth < now) {
       m_worth = std::move(now);
@@ -49,7 +56,8 @@ class RingSearch {
     }
     m_setting.options[s] = option_before;
     m_setting.offsets[s] = before;
-    for (std::size_t i = station.visits.size(); i-- > 0;) m_bands[static_cast<std::size_t>(station.visits[i].frame)] = m_saved[i];
+    for (std::size_t i = station.visits.size(); i-- > 0;)
+      m_bands[static_cast<std::size_t>(station.visits[i].frame)] = m_saved[i];
     return false;
   }
 
@@ -74,7 +82,8 @@ class RingSearch {
           better = try_place(s, option, station.fixed) || better;
           continue;
         }
-        for (Tick offset = 0; offset < station.period; offset += m_step) better = try_place(s, option, offset) || better;
+        for (Tick offset = 0; offset < station.period; offset += m_step)
+          better = try_place(s, option, offset) || better;
       }
     }
     return better;
@@ -91,8 +100,10 @@ class RingSearch {
   Measure m_measure;
 };
 
-// The root's own best; then whichever corridor meets a station already placed is moved there and places the rest of its own.
-Setting glued(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, Setting setting, std::size_t root, Tick step) {
+// The root's own best; then whichever corridor meets a station already placed is moved there and places the rest of its
+// own.
+Setting glued(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own,
+              Setting setting, std::size_t root, Tick step) {
   std::vector<bool> placed(problem.stations.size(), false), done(corridors.size(), false);
   for (std::size_t s = 0; s < placed.size(); ++s) placed[s] = problem.stations[s].is_fixed;
   for (std::size_t count = 0; count < corridors.size(); ++count) {
@@ -101,10 +112,13 @@ Setting glued(const Compiled& problem, const std::vector<int>& corridors, const 
     for (std::size_t k = 0; k < corridors.size() && (count == 0 ? k <= root : next == corridors.size()); ++k) {
       if (done[k] || (count == 0 && k != root)) continue;
       const auto& shape = own[static_cast<std::size_t>(corridors[k])].placed;
-      const auto met = std::find_if(shape.begin(), shape.end(), [&](const Placed& p) { return placed[static_cast<std::size_t>(p.station)]; });
+      const auto met = std::find_if(shape.begin(), shape.end(),
+                                    [&](const Placed& p) { return placed[static_cast<std::size_t>(p.station)]; });
       if (met == shape.end() && count > 0) continue;
       next = k;
-      shift = met == shape.end() ? 0 : setting.offsets[static_cast<std::size_t>(met->station)] - met->from - met->length / 2;
+      shift = met == shape.end()
+                  ? 0
+                  : setting.offsets[static_cast<std::size_t>(met->station)] - met->from - met->length / 2;
     }
     if (next == corridors.size()) break;
     done[next] = true;
@@ -128,27 +142,35 @@ bool Worth::operator<(const Worth& other) const {
   return total < other.total;
 }
 
-std::vector<double> ratios_of(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const std::vector<FrameBand>& bands) {
+std::vector<double> ratios_of(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own,
+                              const std::vector<FrameBand>& bands) {
   std::vector<double> ratios;
   for (const int c : corridors) {
     const Alone& alone = own[static_cast<std::size_t>(c)];
     const int frame = problem.corridors[static_cast<std::size_t>(c)][static_cast<std::size_t>(alone.single)];
     const Tick most = alone.single == 0 ? alone.widths.first : alone.widths.second;
-    if (alone.all_directions) ratios.push_back(ratio_of(share_of(problem, c, bands), alone));
-    else ratios.push_back(most > 0 ? std::min(1.0, static_cast<double>(bands[static_cast<std::size_t>(frame)].width) / static_cast<double>(most)) : 1.0);
+    if (alone.all_directions)
+      ratios.push_back(ratio_of(share_of(problem, c, bands), alone));
+    else
+      ratios.push_back(most > 0 ? std::min(1.0, static_cast<double>(bands[static_cast<std::size_t>(frame)].width) /
+                                                    static_cast<double>(most))
+                                : 1.0);
   }
   return ratios;
 }
 
-Worth worth_of(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const std::vector<FrameBand>& bands) {
+Worth worth_of(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own,
+               const std::vector<FrameBand>& bands) {
   Worth worth{ratios_of(problem, corridors, own, bands), 0};
   std::sort(worth.ratios.begin(), worth.ratios.end());
   for (const int c : corridors)
-    for (const int frame : problem.corridors[static_cast<std::size_t>(c)]) worth.total += bands[static_cast<std::size_t>(frame)].width;
+    for (const int frame : problem.corridors[static_cast<std::size_t>(c)])
+      worth.total += bands[static_cast<std::size_t>(frame)].width;
   return worth;
 }
 
-Setting search_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const Setting& base, Tick step) {
+Setting search_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own,
+                    const Setting& base, Tick step) {
   Setting best = base;
   Worth best_worth = worth_of(problem, corridors, own, measure_all(problem, base));
   for (std::size_t root = 0; root < corridors.size(); ++root) {
@@ -159,11 +181,13 @@ Setting search_ring(const Compiled& problem, const std::vector<int>& corridors, 
   return best;
 }
 
-Setting round_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, Setting setting) {
+Setting round_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own,
+                   Setting setting) {
   for (const int c : corridors)
     for (const int index : stations_of(problem, c)) {
       const auto s = static_cast<std::size_t>(index);
-      if (!problem.stations[s].is_fixed) setting.offsets[s] = wrap(second_floor(setting.offsets[s] + ticks_per_second / 2), problem.stations[s].period);
+      if (!problem.stations[s].is_fixed)
+        setting.offsets[s] = wrap(second_floor(setting.offsets[s] + ticks_per_second / 2), problem.stations[s].period);
     }
   RingSearch search(problem, corridors, own, std::move(setting), ticks_per_second);
   search.run();

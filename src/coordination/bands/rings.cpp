@@ -1,4 +1,5 @@
-// Corridors whose sharing forms rings: shares of own best raised together, then those that can rise further, then the totals.
+// Corridors whose sharing forms rings: shares of own best raised together, then those that can rise further, then the
+// totals.
 #include <algorithm>
 #include <cmath>
 
@@ -9,13 +10,18 @@ namespace entrain::bands {
 namespace {
 
 constexpr double ratio_step = 1e-9;
-constexpr int most_undecided = 4;            // a level that needs more decisions like that is left where it is
+constexpr int most_undecided = 4;  // a level that needs more decisions like that is left where it is
 constexpr std::int64_t most_nodes_a_decision = 4000;
 
 class Ring {
  public:
-  Ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const Setting& known, std::int64_t most_nodes)
-      : m_problem(problem), m_corridors(corridors), m_own(own), m_nodes(most_nodes), m_options(allowed_options(problem)) {
+  Ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const Setting& known,
+       std::int64_t most_nodes)
+      : m_problem(problem),
+        m_corridors(corridors),
+        m_own(own),
+        m_nodes(most_nodes),
+        m_options(allowed_options(problem)) {
     take_known(known);
   }
 
@@ -46,7 +52,8 @@ class Ring {
         const double weight = m_problem.frames[static_cast<std::size_t>(frames[d])].weight;
         BandDemand& demand = demands[static_cast<std::size_t>(frames[d])];
         demand.active = own.all_directions ? weight > 0 : static_cast<int>(d) == own.single;
-        const double share = own.all_directions ? own.share * weight : static_cast<double>(d == 0 ? own.widths.first : own.widths.second);
+        const double share = own.all_directions ? own.share * weight
+                                                : static_cast<double>(d == 0 ? own.widths.first : own.widths.second);
         demand.width = demand.active ? static_cast<Tick>(std::floor(ratios[i] * share + 0.25)) : 0;
       }
     }
@@ -99,11 +106,14 @@ class Ring {
     if (low < 1 && fits(demands_at(at(1)))) low = 1;
     for (int undecided = 0; high - low > ratio_step && undecided < most_undecided;) {
       const double middle = (low + high) / 2;
-      if (fits(demands_at(at(middle)))) low = middle;
+      if (fits(demands_at(at(middle))))
+        low = middle;
       else {
         high = middle;
-        if (m_unknown) ++undecided;
-        else m_least_fail = middle;
+        if (m_unknown)
+          ++undecided;
+        else
+          m_least_fail = middle;
       }
     }
     ratios = at(low);
@@ -119,7 +129,8 @@ class Ring {
       if (frozen[i]) continue;
       frozen[i] = true;
       std::vector<double> tried = ratios;
-      const double level = std::find(frozen.begin(), frozen.end(), false) == frozen.end() ? ratios[i] : raise(tried, frozen, ratios[i]);
+      const double level =
+          std::find(frozen.begin(), frozen.end(), false) == frozen.end() ? ratios[i] : raise(tried, frozen, ratios[i]);
       frozen[i] = false;
       if (level > best + 10 * ratio_step) best = level, chosen = i, best_ratios = tried;
     }
@@ -142,7 +153,8 @@ class Ring {
     Tick low = m_best[frame].width, high = low;
     for (const StopKey& stop : m_problem.frames[frame].stops) {
       const auto station = static_cast<std::size_t>(stop.station);
-      const Tick longest = longest_slot(m_problem.stations[station].visits[static_cast<std::size_t>(stop.visit)], m_options[station]);
+      const Tick longest =
+          longest_slot(m_problem.stations[station].visits[static_cast<std::size_t>(stop.visit)], m_options[station]);
       high = &stop == &m_problem.frames[frame].stops.front() ? longest : std::min(high, longest);
     }
     const auto reach = [&](Tick width) {
@@ -154,8 +166,10 @@ class Ring {
     if (low >= high || !reach(low + 1) || reach(high)) return;
     while (high - low > ticks_per_second / 1000) {
       const Tick middle = low + (high - low) / 2;
-      if (reach(middle)) low = middle;
-      else high = middle;
+      if (reach(middle))
+        low = middle;
+      else
+        high = middle;
     }
   }
 
@@ -174,7 +188,8 @@ class Ring {
 
 }  // namespace
 
-RingAnswer solve_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, const Setting& known, std::int64_t most_nodes) {
+RingAnswer solve_ring(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own,
+                      const Setting& known, std::int64_t most_nodes) {
   return Ring(problem, corridors, own, known, most_nodes).run();
 }
 

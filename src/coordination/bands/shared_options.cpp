@@ -9,8 +9,14 @@ namespace {
 
 class SharedOptions {
  public:
-  SharedOptions(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, std::int64_t most_nodes, bool whole_seconds)
-      : m_whole_seconds(whole_seconds), m_problem(problem), m_corridors(corridors), m_own(own), m_nodes(most_nodes), m_options(allowed_options(problem)) {
+  SharedOptions(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own,
+                std::int64_t most_nodes, bool whole_seconds)
+      : m_whole_seconds(whole_seconds),
+        m_problem(problem),
+        m_corridors(corridors),
+        m_own(own),
+        m_nodes(most_nodes),
+        m_options(allowed_options(problem)) {
     for (std::size_t s = 0; s < problem.stations.size(); ++s)
       if (is_shared(problem.stations[s]) && m_options[s].size() > 1) m_shared.push_back(static_cast<int>(s));
   }
@@ -101,7 +107,8 @@ class SharedOptions {
 
 }  // namespace
 
-OptionLists choose_shared_options(const Compiled& problem, const std::vector<int>& corridors, const std::vector<Alone>& own, std::int64_t most_nodes, bool whole_seconds,
+OptionLists choose_shared_options(const Compiled& problem, const std::vector<int>& corridors,
+                                  const std::vector<Alone>& own, std::int64_t most_nodes, bool whole_seconds,
                                   bool& proved) {
   return SharedOptions(problem, corridors, own, most_nodes, whole_seconds).run(proved);
 }

@@ -10,10 +10,12 @@ namespace {
 
 void check_whole_seconds(const Compiled& compiled, Diagnostics& found) {
   if (compiled.cycle % ticks_per_second != 0)
-    found.push_back(error("cycle", std::to_string(to_seconds(compiled.cycle)), "a whole number of seconds", "Round the cycle, or ask for continuous offsets."));
+    found.push_back(error("cycle", std::to_string(to_seconds(compiled.cycle)), "a whole number of seconds",
+                          "Round the cycle, or ask for continuous offsets."));
   for (std::size_t s = 0; s < compiled.stations.size(); ++s)
     if (compiled.cycle % ticks_per_second == 0 && compiled.stations[s].period % ticks_per_second != 0)
-      found.push_back(error("station " + std::to_string(s), "half of an odd cycle", "a whole number of seconds", "Run the station at the full cycle or make the cycle even."));
+      found.push_back(error("station " + std::to_string(s), "half of an odd cycle", "a whole number of seconds",
+                            "Run the station at the full cycle or make the cycle even."));
 }
 
 double seconds(double ticks) { return ticks / static_cast<double>(ticks_per_second); }
@@ -30,10 +32,13 @@ Answer to_answer(const Compiled& compiled, const JointSetting& joint) {
     corridor.all_directions = joint.all_directions[c];
     corridor.witness = joint.witness[c];
     for (std::size_t d = 0; d < corridor.directions.size(); ++d)
-      corridor.directions[d].bound_s = std::max(corridor.directions[d].width_s, to_seconds(d == 0 ? joint.bound[c].first : joint.bound[c].second));
+      corridor.directions[d].bound_s =
+          std::max(corridor.directions[d].width_s, to_seconds(d == 0 ? joint.bound[c].first : joint.bound[c].second));
     answer.least_ratio = std::min(answer.least_ratio, ratio_of(share, own));
     if (!corridor.all_directions)
-      answer.notes.push_back(note("corridor " + std::to_string(c), "no offsets give every direction a band at once; the widest band of one direction was taken"));
+      answer.notes.push_back(
+          note("corridor " + std::to_string(c),
+               "no offsets give every direction a band at once; the widest band of one direction was taken"));
   }
   answer.least_ratio_bound = joint.least_ratio_bound;
   answer.proved = joint.proved;
@@ -64,6 +69,8 @@ Result<Answer> solve(const TwoWayInput& input, bool whole_seconds) {
 Result<Answer> solve_two_way(const TwoWayInput& input) { return solve(input, false); }
 Result<Answer> solve_two_way_whole_seconds(const TwoWayInput& input) { return solve(input, true); }
 Result<Answer> solve_joint(const Problem& problem, const Effort& effort) { return solve(problem, effort, false); }
-Result<Answer> solve_joint_whole_seconds(const Problem& problem, const Effort& effort) { return solve(problem, effort, true); }
+Result<Answer> solve_joint_whole_seconds(const Problem& problem, const Effort& effort) {
+  return solve(problem, effort, true);
+}
 
 }  // namespace entrain::bands

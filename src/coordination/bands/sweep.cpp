@@ -16,7 +16,8 @@ bool Sweep::add_stairs(const SweepStation& station, const std::vector<SweepTerm>
   for (int t = station.begin; t < station.end; ++t) {
     const SweepTerm& term = terms[static_cast<std::size_t>(t)];
     level = std::max(level, term.reserve - term.c);
-    for (Tick at = station.period - term.c; at < cycle; at += station.period) m_steps.push_back({at, term.reserve + at});
+    for (Tick at = station.period - term.c; at < cycle; at += station.period)
+      m_steps.push_back({at, term.reserve + at});
   }
   for (std::size_t i = 1; i < m_steps.size(); ++i) {  // few: insertion
     const Step step = m_steps[i];
@@ -49,8 +50,10 @@ Peak Sweep::highest_by_sorting(Tick cycle) {
   m_some.clear();
   for (const Stair& stair : m_stairs) {
     lowest = std::min(lowest, stair.level);
-    if (stair.end < cycle) m_some.push_back(stair);
-    else last = std::min(last, stair.level);
+    if (stair.end < cycle)
+      m_some.push_back(stair);
+    else
+      last = std::min(last, stair.level);
   }
   return best_of_some(last, {lowest, 0});
 }
@@ -59,7 +62,9 @@ Peak Sweep::highest_by_buckets(Tick cycle) {
   std::size_t count = 16;
   while (count * 2 < m_stairs.size() && count < 65536) count *= 2;
   const double scale = static_cast<double>(count) / static_cast<double>(cycle);
-  const auto bucket_of = [&](Tick end) { return end == cycle ? count : std::min(count - 1, static_cast<std::size_t>(static_cast<double>(end) * scale)); };
+  const auto bucket_of = [&](Tick end) {
+    return end == cycle ? count : std::min(count - 1, static_cast<std::size_t>(static_cast<double>(end) * scale));
+  };
   m_lowest.assign(count + 1, unlimited);
   m_earliest.assign(count + 1, unlimited);
   for (const Stair& stair : m_stairs) {
@@ -94,8 +99,10 @@ Peak Sweep::highest(const std::vector<SweepStation>& stations, const std::vector
   return highest_by_buckets(cycle);
 }
 
-// Fewest intervals that cover the circle from 0 on: among the stairs whose level is low enough at phi, the one that lasts longest.
-std::vector<int> Sweep::blockers(const std::vector<SweepStation>& stations, const std::vector<SweepTerm>& terms, Tick cycle, Tick value) {
+// Fewest intervals that cover the circle from 0 on: among the stairs whose level is low enough at phi, the one that
+// lasts longest.
+std::vector<int> Sweep::blockers(const std::vector<SweepStation>& stations, const std::vector<SweepTerm>& terms,
+                                 Tick cycle, Tick value) {
   struct Owned {
     Tick level = 0, end = 0;
     int station = 0;
@@ -106,7 +113,9 @@ std::vector<int> Sweep::blockers(const std::vector<SweepStation>& stations, cons
     if (!add_stairs(stations[s], terms, cycle)) return {static_cast<int>(s)};
     for (const Stair& stair : m_stairs) all.push_back({stair.level, stair.end, static_cast<int>(s)});
   }
-  std::sort(all.begin(), all.end(), [](const Owned& a, const Owned& b) { return a.level != b.level ? a.level < b.level : a.station < b.station; });
+  std::sort(all.begin(), all.end(), [](const Owned& a, const Owned& b) {
+    return a.level != b.level ? a.level < b.level : a.station < b.station;
+  });
   std::vector<int> found;
   Owned longest{0, 0, -1};
   std::size_t next = 0;

@@ -1,4 +1,5 @@
-// The highest point of a lower envelope: max over phi of min over stations of max over terms of reserve - ((phi + c) mod period).
+// The highest point of a lower envelope: max over phi of min over stations of max over terms of reserve - ((phi + c)
+// mod period).
 #pragma once
 
 #include <limits>
@@ -17,7 +18,7 @@ struct SweepTerm {
 };
 
 struct SweepStation {
-  Tick period = 0;  // the cycle or half of it
+  Tick period = 0;         // the cycle or half of it
   int begin = 0, end = 0;  // its terms
 };
 
@@ -26,17 +27,19 @@ struct Peak {
   Tick phi = 0;    // the least phi in [0, cycle) that reaches it
 };
 
-// Every term falls with slope -1 and jumps up where it is reset, so level = value + phi is a rising staircase for each station. A stair
-// that ends at r with level L caps the envelope at L - phi for *every* phi before r, because the stairs before it are lower still. So
-// the envelope is a running minimum over stairs in order of r, and its peaks lie at the r. Buckets over r find the few that can hold
-// the highest: linear time in the number of stairs as a rule, and never more than one sort of them.
+// Every term falls with slope -1 and jumps up where it is reset, so level = value + phi is a rising staircase for each
+// station. A stair that ends at r with level L caps the envelope at L - phi for *every* phi before r, because the
+// stairs before it are lower still. So the envelope is a running minimum over stairs in order of r, and its peaks lie
+// at the r. Buckets over r find the few that can hold the highest: linear time in the number of stairs as a rule, and
+// never more than one sort of them.
 class Sweep {
  public:
   // `cycle` is a multiple of every period.
   Peak highest(const std::vector<SweepStation>& stations, const std::vector<SweepTerm>& terms, Tick cycle);
 
   // Few stations that together leave no phi with a value above `value`, ascending; empty if some phi has one.
-  std::vector<int> blockers(const std::vector<SweepStation>& stations, const std::vector<SweepTerm>& terms, Tick cycle, Tick value);
+  std::vector<int> blockers(const std::vector<SweepStation>& stations, const std::vector<SweepTerm>& terms, Tick cycle,
+                            Tick value);
 
  private:
   struct Stair {

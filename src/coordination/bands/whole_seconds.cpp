@@ -1,6 +1,6 @@
-// The best whole-second offsets of one corridor. A band may be moved earlier until its leading edge meets the start of a window, so
-// only the fractions of a second at which windows can start need be tried for each direction's edge; of their combinations only
-// those the continuous problem admits.
+// The best whole-second offsets of one corridor. A band may be moved earlier until its leading edge meets the start of
+// a window, so only the fractions of a second at which windows can start need be tried for each direction's edge; of
+// their combinations only those the continuous problem admits.
 #include <algorithm>
 #include <cmath>
 
@@ -13,8 +13,13 @@ namespace {
 class WholeSeconds {
  public:
   WholeSeconds(const Compiled& problem, int corridor, const OptionLists& options, const Alone& bound)
-      : m_problem(problem), m_corridor(corridor), m_frames(problem.corridors[static_cast<std::size_t>(corridor)]), m_options(options), m_bound(bound),
-        m_met(stations_of(problem, corridor)), m_simple(is_simple(problem, corridor)) {
+      : m_problem(problem),
+        m_corridor(corridor),
+        m_frames(problem.corridors[static_cast<std::size_t>(corridor)]),
+        m_options(options),
+        m_bound(bound),
+        m_met(stations_of(problem, corridor)),
+        m_simple(is_simple(problem, corridor)) {
     for (const int station : m_met)
       if (m_problem.stations[static_cast<std::size_t>(station)].is_fixed) m_fixed.push_back(station);
     m_shifts = m_fixed.size() < 2;
@@ -26,16 +31,23 @@ class WholeSeconds {
   Alone run();
 
  private:
-  struct Active { bool first = false, second = false; };
+  struct Active {
+    bool first = false, second = false;
+  };
   const CompiledStation& station(int index) const { return m_problem.stations[static_cast<std::size_t>(index)]; }
-  double weight(std::size_t direction) const { return m_problem.frames[static_cast<std::size_t>(m_frames[direction])].weight; }
-  Grid grid_of(int index) const { return {true, m_shifts && station(index).is_fixed ? wrap(station(index).fixed, ticks_per_second) : 0}; }
+  double weight(std::size_t direction) const {
+    return m_problem.frames[static_cast<std::size_t>(m_frames[direction])].weight;
+  }
+  Grid grid_of(int index) const {
+    return {true, m_shifts && station(index).is_fixed ? wrap(station(index).fixed, ticks_per_second) : 0};
+  }
   void find_fractions(std::size_t direction);
   void keep_if_better(const Widths& widths, bool extended);
   bool fits(const Widths& widths, Active active);
   std::optional<Placed> fit(int index) {
     const CompiledStation& s = station(index);
-    return m_fit.fit(s, index, m_options[static_cast<std::size_t>(index)], m_demands, grid_of(index), !m_shifts && s.is_fixed, s.fixed);
+    return m_fit.fit(s, index, m_options[static_cast<std::size_t>(index)], m_demands, grid_of(index),
+                     !m_shifts && s.is_fixed, s.fixed);
   }
   bool try_edges(Tick first, Tick second);
   bool fixed_admit(Tick first);
@@ -100,7 +112,8 @@ bool WholeSeconds::fixed_admit(Tick first) {
   return admit;
 }
 
-bool WholeSeconds::try_first(const Widths& widths, Active active, const std::vector<CorridorBands::PhiArc>& arcs, Tick first) {
+bool WholeSeconds::try_first(const Widths& widths, Active active, const std::vector<CorridorBands::PhiArc>& arcs,
+                             Tick first) {
   if (!active.second) return try_edges(first, 0);
   if (!m_shifts && !fixed_admit(first)) return false;
   for (const auto& arc : arcs)
@@ -135,7 +148,8 @@ bool WholeSeconds::fits(const Widths& widths, Active active) {
 // What the offsets found really give, at least what was asked for.
 Widths WholeSeconds::achieved(Active active) const {
   Setting setting;
-  for (const CompiledStation& s : m_problem.stations) setting.options.push_back(s.options.front()), setting.offsets.push_back(0);
+  for (const CompiledStation& s : m_problem.stations)
+    setting.options.push_back(s.options.front()), setting.offsets.push_back(0);
   for (const Placed& placed : m_placed) {
     setting.options[static_cast<std::size_t>(placed.station)] = placed.option;
     setting.offsets[static_cast<std::size_t>(placed.station)] = placed.from;
@@ -168,7 +182,9 @@ Widths WholeSeconds::raise_share(Active active, double bound) {
     low = share(best, active);
     return true;
   };
-  const auto at = [&](double t) { return Widths{static_cast<Tick>(std::ceil(w0 * t - 0.25)), static_cast<Tick>(std::ceil(w1 * t - 0.25))}; };
+  const auto at = [&](double t) {
+    return Widths{static_cast<Tick>(std::ceil(w0 * t - 0.25)), static_cast<Tick>(std::ceil(w1 * t - 0.25))};
+  };
   if (!reach(at(high))) {
     double step = static_cast<double>(ticks_per_second);
     while (low == 0 && high - step > 0 && !reach(at(high - step))) high -= step, step *= 2;
@@ -177,12 +193,16 @@ Widths WholeSeconds::raise_share(Active active, double bound) {
       if (!reach(at(middle))) high = middle;
     }
   }
-  while (reach({active.first && w0 > 0 ? static_cast<Tick>(std::floor(w0 * low + 0.25)) + 1 : 0, active.second && w1 > 0 ? static_cast<Tick>(std::floor(w1 * low + 0.25)) + 1 : 0})) {}
+  while (reach({active.first && w0 > 0 ? static_cast<Tick>(std::floor(w0 * low + 0.25)) + 1 : 0,
+                active.second && w1 > 0 ? static_cast<Tick>(std::floor(w1 * low + 0.25)) + 1 : 0})) {
+  }
   return best;
 }
 
 Widths WholeSeconds::raise_axis(Widths base, int direction, Active active, Tick bound) {
-  const auto raised = [&](Tick by) { return direction == 0 ? Widths{base.first + by, base.second} : Widths{base.first, base.second + by}; };
+  const auto raised = [&](Tick by) {
+    return direction == 0 ? Widths{base.first + by, base.second} : Widths{base.first, base.second + by};
+  };
   Tick low = 0, high = bound + 1;
   const auto reach = [&](Tick by) {
     if (!fits(raised(by), active)) return false;
@@ -202,7 +222,8 @@ Widths WholeSeconds::raise_axis(Widths base, int direction, Active active, Tick 
 // The share holds one direction at its least; the other takes what it can get.
 Widths WholeSeconds::extend(const Widths& reached, Active active) {
   const double t = share(reached, active);
-  const Widths base{static_cast<Tick>(std::ceil(weight(0) * t - 0.25)), static_cast<Tick>(std::ceil(weight(1) * t - 0.25))};
+  const Widths base{static_cast<Tick>(std::ceil(weight(0) * t - 0.25)),
+                    static_cast<Tick>(std::ceil(weight(1) * t - 0.25))};
   const Widths first = raise_axis(base, 0, active, m_problem.cycle - base.first);
   const Widths second = raise_axis(base, 1, active, m_problem.cycle - base.second);
   return first.first - base.first >= second.second - base.second ? first : second;
@@ -221,14 +242,17 @@ Alone WholeSeconds::finish(const Widths& widths, Active active) {
   alone.proved = m_bound.proved;
   fits(widths, active);
   alone.widths = achieved(active);
-  alone.share = alone.all_directions ? share(alone.widths, active) : (m_frames.size() == 2 && weight(0) > 0 && weight(1) > 0 ? 0 : share(alone.widths, active));
+  alone.share = alone.all_directions
+                    ? share(alone.widths, active)
+                    : (m_frames.size() == 2 && weight(0) > 0 && weight(1) > 0 ? 0 : share(alone.widths, active));
   for (Placed placed : m_placed) {  // the middle second, the earlier of two
     const Tick period = station(placed.station).period;
     placed.from = wrap(placed.from + placed.length / ticks_per_second / 2 * ticks_per_second, period);
     placed.length = 0;
     alone.placed.push_back(placed);
   }
-  std::sort(alone.placed.begin(), alone.placed.end(), [](const Placed& a, const Placed& b) { return a.station < b.station; });
+  std::sort(alone.placed.begin(), alone.placed.end(),
+            [](const Placed& a, const Placed& b) { return a.station < b.station; });
   alone.anchored = !m_fixed.empty();
   if (m_fixed.size() == 1) {
     const int index = m_fixed.front();
@@ -251,7 +275,8 @@ Alone WholeSeconds::run() {
   const bool first_counts = weight(0) > 0, second_counts = two && weight(1) > 0;
   Widths first = first_counts ? widest_single(0) : Widths{}, second = second_counts ? widest_single(1) : Widths{};
   if (two && first.first + second.second == 0) (first_counts ? second : first) = widest_single(first_counts ? 1 : 0);
-  const bool take_first = first.first != second.second ? first.first > second.second : first_counts && (!second_counts || weight(0) >= weight(1));
+  const bool take_first = first.first != second.second ? first.first > second.second
+                                                       : first_counts && (!second_counts || weight(0) >= weight(1));
   const Widths widths = take_first ? first : second;
   const Widths one_more = take_first ? Widths{widths.first, 1} : Widths{1, widths.second};
   if (two && !both_count && fits(one_more, {true, true})) return finish(extend(widths, {true, true}), {true, true});

@@ -14,7 +14,8 @@ namespace {
 TwoWayInput sound() {
   TwoWayInput input;
   input.cycle_s = 60;
-  input.stations = {TwoWayStation{{{{{0, 30}}, {{0, 30}}}}, {}, {}, false, 0, 0}, TwoWayStation{{{{{0, 30}}, {{0, 30}}}}, {}, {}, false, 0, 0}};
+  input.stations = {TwoWayStation{{{{{0, 30}}, {{0, 30}}}}, {}, {}, false, 0, 0},
+                    TwoWayStation{{{{{0, 30}}, {{0, 30}}}}, {}, {}, false, 0, 0}};
   input.forward_travel_s = {10};
   input.backward_travel_s = {10};
   return input;
@@ -22,7 +23,8 @@ TwoWayInput sound() {
 
 bool mentions(const Diagnostics& found, const std::string& where) {
   for (const Diagnostic& diagnostic : found)
-    if (diagnostic.where.find(where) != std::string::npos && !diagnostic.expected.empty() && !diagnostic.mend.empty()) return true;
+    if (diagnostic.where.find(where) != std::string::npos && !diagnostic.expected.empty() && !diagnostic.mend.empty())
+      return true;
   return false;
 }
 
@@ -41,7 +43,8 @@ TEST_CASE("every problem of a band input is named at once", "[bands]") {
   input.stations[1].backward_clearance_s = nan;
   const auto answer = solve_two_way(input);
   REQUIRE_FALSE(answer);
-  for (const char* where : {"cycle", "weight", "travel time", "backward travel", "duration", "fixed option", "fixed offset", "queue clearance"}) {
+  for (const char* where : {"cycle", "weight", "travel time", "backward travel", "duration", "fixed option",
+                            "fixed offset", "queue clearance"}) {
     INFO(where);
     CHECK(mentions(answer.error(), where));
   }

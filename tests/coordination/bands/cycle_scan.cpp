@@ -28,7 +28,8 @@ TEST_CASE("a cycle scan equals one solution a cycle", "[bands]") {
       for (TwoWayStation& station : scaled.stations)
         for (StationOption& option : station.options)
           for (auto* windows : {&option.forward, &option.backward})
-            for (Window& window : *windows) window.start_s *= share.cycle_s / input.cycle_s, window.duration_s *= share.cycle_s / input.cycle_s;
+            for (Window& window : *windows)
+              window.start_s *= share.cycle_s / input.cycle_s, window.duration_s *= share.cycle_s / input.cycle_s;
       const auto answer = solve_two_way(scaled);
       REQUIRE(answer);
       INFO("cycle " << share.cycle_s << ": " << judge::text(input));

@@ -27,7 +27,8 @@ std::vector<double> ratios(const Answer& answer) {
 
 void check_fixed(const Problem& problem, const Answer& answer) {
   for (std::size_t s = 0; s < problem.stations.size(); ++s)
-    if (problem.stations[s].fixed_offset_s) CHECK(answer.stations[s].offset_s == Approx(*problem.stations[s].fixed_offset_s));
+    if (problem.stations[s].fixed_offset_s)
+      CHECK(answer.stations[s].offset_s == Approx(*problem.stations[s].fixed_offset_s));
 }
 
 // Negative: a is smaller; positive: larger; by the first entry that differs by more than rounding.
@@ -57,7 +58,8 @@ TEST_CASE("corridors that share one station each reach the fairest whole-second 
 TEST_CASE("corridors that share one station and no order conflict all reach their own best", "[bands]") {
   std::mt19937 random(6);
   for (int round = 0; round < 100; ++round) {
-    const Problem problem = judge::random_joint(random, round % 2 ? judge::Shape::cross : judge::Shape::chain, false, 0);
+    const Problem problem =
+        judge::random_joint(random, round % 2 ? judge::Shape::cross : judge::Shape::chain, false, 0);
     const auto answer = solve_joint(problem);
     REQUIRE(answer);
     CHECK(answer->least_ratio == Approx(1).margin(1e-9));
@@ -104,12 +106,15 @@ TEST_CASE("a couplet: lists that differ, shared stations couple, others are free
   Problem problem;
   problem.cycle_s = 60;
   problem.stations.assign(4, Station{});
-  const auto stop = [](int station, double travel, double start, double duration) { return Stop{station, travel, 0, {{{start, duration}}}}; };
-  problem.corridors = {{{Direction{{stop(0, 0, 0, 30), stop(1, 12, 7, 20), stop(2, 18, 0, 30)}, 1}, Direction{{stop(2, 0, 30, 30), stop(3, 9, 3, 25), stop(0, 11, 30, 30)}, 1}}}};
+  const auto stop = [](int station, double travel, double start, double duration) {
+    return Stop{station, travel, 0, {{{start, duration}}}};
+  };
+  problem.corridors = {{{Direction{{stop(0, 0, 0, 30), stop(1, 12, 7, 20), stop(2, 18, 0, 30)}, 1},
+                         Direction{{stop(2, 0, 30, 30), stop(3, 9, 3, 25), stop(0, 11, 30, 30)}, 1}}}};
   const auto answer = solve_joint(problem);
   REQUIRE(answer);
-  // x2 - x0 = 30 serves the forward bands fully; backward needs x0 - x2 = 20 mod 60, that is x2 - x0 = 40: 10 s apart, 50 s in all,
-  // but 1 and 3 cap them at 20 and 25.
+  // x2 - x0 = 30 serves the forward bands fully; backward needs x0 - x2 = 20 mod 60, that is x2 - x0 = 40: 10 s apart,
+  // 50 s in all, but 1 and 3 cap them at 20 and 25.
   CHECK(answer->corridors[0].share_s == Approx(20).margin(1e-9));
   CHECK(answer->corridors[0].directions[1].width_s == Approx(25).margin(1e-9));
 }
@@ -119,7 +124,8 @@ TEST_CASE("a station met twice has one offset", "[bands]") {
   Problem problem;
   problem.cycle_s = 60;
   problem.stations.assign(2, Station{});
-  problem.corridors = {{{Direction{{Stop{0, 0, 0, {{{0, 20}}}}, Stop{1, 10, 0, {{{0, 30}}}}, Stop{0, 15, 0, {{{30, 20}}}}}, 1}}}};
+  problem.corridors = {
+      {{Direction{{Stop{0, 0, 0, {{{0, 20}}}}, Stop{1, 10, 0, {{{0, 30}}}}, Stop{0, 15, 0, {{{30, 20}}}}}, 1}}}};
   for (const bool whole : {false, true}) {
     const auto answer = whole ? solve_joint_whole_seconds(problem) : solve_joint(problem);
     REQUIRE(answer);
@@ -161,14 +167,16 @@ TEST_CASE("admissible arcs: inside them the band fits, outside it does not", "[b
     const Problem problem = to_problem(input);
     std::vector<int> options;
     std::vector<double> offsets;
-    for (const StationAnswer& station : answer->stations) options.push_back(station.option), offsets.push_back(station.offset_s);
+    for (const StationAnswer& station : answer->stations)
+      options.push_back(station.option), offsets.push_back(station.offset_s);
     for (int d = 0; d < 2; ++d) {
       const DirectionAnswer& direction = answer->corridors[0].directions[static_cast<std::size_t>(d)];
       if (direction.width_s <= 0) continue;
       const auto arcs = admissible_offsets(problem, 0, d, options, direction.width_s);
       REQUIRE(arcs);
       for (std::size_t s = 0; s < direction.stops.size(); ++s) {
-        const auto station = static_cast<std::size_t>(problem.corridors[0].directions[static_cast<std::size_t>(d)].stops[s].station);
+        const auto station =
+            static_cast<std::size_t>(problem.corridors[0].directions[static_cast<std::size_t>(d)].stops[s].station);
         const double period = input.cycle_s / (input.stations[station].half_period ? 2 : 1);
         bool inside = false;
         for (const OffsetArc& arc : (*arcs)[s]) {

@@ -11,7 +11,8 @@ using Mask = std::uint64_t;
 
 class Cells {
  public:
-  Cells(double cycle_s, int cells_per_s) : m_per_s(cells_per_s), m_count(cells(cycle_s)), m_all(m_count == 64 ? ~Mask{0} : (Mask{1} << m_count) - 1) {}
+  Cells(double cycle_s, int cells_per_s)
+      : m_per_s(cells_per_s), m_count(cells(cycle_s)), m_all(m_count == 64 ? ~Mask{0} : (Mask{1} << m_count) - 1) {}
 
   int cells(double seconds) const { return static_cast<int>(std::lround(seconds * m_per_s)); }
   int count() const { return m_count; }
@@ -22,7 +23,8 @@ class Cells {
     for (const Window& window : windows) {
       const int duration = cells(window.duration_s);
       if (duration == m_count) return m_all;
-      for (int i = 0; i < duration; ++i) open |= Mask{1} << (((cells(window.start_s) + i) % m_count + m_count) % m_count);
+      for (int i = 0; i < duration; ++i)
+        open |= Mask{1} << (((cells(window.start_s) + i) % m_count + m_count) % m_count);
     }
     for (int i = 0; i < cells(clearance_s); ++i) open &= rotate(open, 1);  // every run loses its first cell
     return open;
@@ -49,7 +51,11 @@ class Cells {
 
 class Search {
  public:
-  Search(const TwoWayInput& input, int cells_per_s, double offset_step_s) : m_input(input), m_cells(input.cycle_s, cells_per_s), m_per_s(cells_per_s), m_step(m_cells.cells(offset_step_s)) {
+  Search(const TwoWayInput& input, int cells_per_s, double offset_step_s)
+      : m_input(input),
+        m_cells(input.cycle_s, cells_per_s),
+        m_per_s(cells_per_s),
+        m_step(m_cells.cells(offset_step_s)) {
     int forward = 0, backward = 0;
     for (std::size_t i = 0; i < input.stations.size(); ++i) {
       m_forward_shift.push_back(forward);
@@ -73,17 +79,24 @@ class Search {
     for (std::size_t o = 0; o < station.options.size(); ++o) {
       if (station.fixed_option && static_cast<std::size_t>(*station.fixed_option) != o) continue;
       const Mask f = m_cells.mask(station.options[o].forward, station.forward_clearance_s);
-      const Mask b = m_input.one_way ? m_cells.all() : m_cells.mask(station.options[o].backward, station.backward_clearance_s);
-      const auto place = [&](int x) { descend(i + 1, forward & m_cells.rotate(f, x - m_forward_shift[i]), backward & m_cells.rotate(b, x - m_backward_shift[i])); };
-      if (station.fixed_offset_s) place(m_cells.cells(*station.fixed_offset_s));
-      else if (i == 0 && !any_fixed()) place(0);
+      const Mask b =
+          m_input.one_way ? m_cells.all() : m_cells.mask(station.options[o].backward, station.backward_clearance_s);
+      const auto place = [&](int x) {
+        descend(i + 1, forward & m_cells.rotate(f, x - m_forward_shift[i]),
+                backward & m_cells.rotate(b, x - m_backward_shift[i]));
+      };
+      if (station.fixed_offset_s)
+        place(m_cells.cells(*station.fixed_offset_s));
+      else if (i == 0 && !any_fixed())
+        place(0);
       else
         for (int x = 0; x < m_cells.count() / (station.half_period ? 2 : 1); x += m_step) place(x);
     }
   }
 
   bool any_fixed() const {
-    return std::any_of(m_input.stations.begin(), m_input.stations.end(), [](const TwoWayStation& s) { return s.fixed_offset_s.has_value(); });
+    return std::any_of(m_input.stations.begin(), m_input.stations.end(),
+                       [](const TwoWayStation& s) { return s.fixed_offset_s.has_value(); });
   }
 
   void keep(Mask forward, Mask backward) {
@@ -105,7 +118,11 @@ class Search {
 class JointSearch {
  public:
   JointSearch(const Problem& problem, const std::vector<double>& own_best_s, int cells_per_s, double offset_step_s)
-      : m_problem(problem), m_own(own_best_s), m_cells(problem.cycle_s, cells_per_s), m_per_s(cells_per_s), m_step(m_cells.cells(offset_step_s)) {}
+      : m_problem(problem),
+        m_own(own_best_s),
+        m_cells(problem.cycle_s, cells_per_s),
+        m_per_s(cells_per_s),
+        m_step(m_cells.cells(offset_step_s)) {}
 
   std::vector<double> run() {
     std::vector<std::vector<Mask>> open;
@@ -120,7 +137,8 @@ class JointSearch {
     const Station& station = m_problem.stations[s];
     for (int option = 0; option < station.option_count; ++option) {
       if (station.fixed_option && *station.fixed_option != option) continue;
-      if (station.fixed_offset_s) place(s, option, m_cells.cells(*station.fixed_offset_s), open);
+      if (station.fixed_offset_s)
+        place(s, option, m_cells.cells(*station.fixed_offset_s), open);
       else
         for (int x = 0; x < m_cells.count() / (station.half_period ? 2 : 1); x += m_step) place(s, option, x, open);
     }
@@ -133,7 +151,8 @@ class JointSearch {
         for (const Stop& stop : m_problem.corridors[c].directions[d].stops) {
           travel_s += stop.travel_s;
           if (static_cast<std::size_t>(stop.station) != s) continue;
-          open[c][d] &= m_cells.rotate(m_cells.mask(stop.windows[static_cast<std::size_t>(option)], stop.clearance_s), x - m_cells.cells(travel_s));
+          open[c][d] &= m_cells.rotate(m_cells.mask(stop.windows[static_cast<std::size_t>(option)], stop.clearance_s),
+                                       x - m_cells.cells(travel_s));
         }
       }
     descend(s + 1, open);
@@ -145,7 +164,8 @@ class JointSearch {
       double share = 1e9;
       for (std::size_t d = 0; d < open[c].size(); ++d)
         if (m_problem.corridors[c].directions[d].weight > 0)
-          share = std::min(share, static_cast<double>(m_cells.longest_run(open[c][d])) / m_per_s / m_problem.corridors[c].directions[d].weight);
+          share = std::min(share, static_cast<double>(m_cells.longest_run(open[c][d])) / m_per_s /
+                                      m_problem.corridors[c].directions[d].weight);
       ratios.push_back(m_own[c] > 0 ? std::min(1.0, share / m_own[c]) : 1.0);
     }
     std::sort(ratios.begin(), ratios.end());
@@ -161,7 +181,8 @@ class JointSearch {
 
 }  // namespace
 
-std::vector<double> exhaustive_joint(const Problem& problem, const std::vector<double>& own_best_s, int cells_per_s, double offset_step_s) {
+std::vector<double> exhaustive_joint(const Problem& problem, const std::vector<double>& own_best_s, int cells_per_s,
+                                     double offset_step_s) {
   return JointSearch(problem, own_best_s, cells_per_s, offset_step_s).run();
 }
 
@@ -169,10 +190,18 @@ Problem random_joint(std::mt19937& random, Shape shape, bool orders, int fixed) 
   const auto pick = [&](int from, int to) { return std::uniform_int_distribution<int>(from, to)(random); };
   std::vector<std::vector<int>> lists;
   switch (shape) {
-    case Shape::cross: lists = {{0, 1, 2}, {3, 1}}; break;
-    case Shape::two_shared: lists = {{0, 1, 2}, {2, 0}}; break;
-    case Shape::triangle: lists = {{0, 1}, {1, 2}, {2, 0}}; break;
-    case Shape::chain: lists = {{0, 1}, {1, 2}, {2, 3}}; break;
+    case Shape::cross:
+      lists = {{0, 1, 2}, {3, 1}};
+      break;
+    case Shape::two_shared:
+      lists = {{0, 1, 2}, {2, 0}};
+      break;
+    case Shape::triangle:
+      lists = {{0, 1}, {1, 2}, {2, 0}};
+      break;
+    case Shape::chain:
+      lists = {{0, 1}, {1, 2}, {2, 3}};
+      break;
   }
   Problem problem;
   problem.cycle_s = 2 * pick(4, 5);
@@ -180,7 +209,8 @@ Problem random_joint(std::mt19937& random, Shape shape, bool orders, int fixed) 
   int stations = 0;
   for (const auto& list : lists) stations = std::max(stations, *std::max_element(list.begin(), list.end()) + 1);
   for (int s = 0; s < stations; ++s) problem.stations.push_back({orders ? pick(1, 2) : 1, {}, {}, false});
-  for (int f = 0; f < fixed; ++f) problem.stations[static_cast<std::size_t>(pick(0, stations - 1))].fixed_offset_s = pick(0, cycle - 1);
+  for (int f = 0; f < fixed; ++f)
+    problem.stations[static_cast<std::size_t>(pick(0, stations - 1))].fixed_offset_s = pick(0, cycle - 1);
   for (const auto& list : lists) {
     Corridor corridor;
     for (const bool forward : {true, false}) {
@@ -199,12 +229,16 @@ Problem random_joint(std::mt19937& random, Shape shape, bool orders, int fixed) 
   return problem;
 }
 
-Best exhaustive(const TwoWayInput& input, int cells_per_s, double offset_step_s) { return Search(input, cells_per_s, offset_step_s).run(); }
+Best exhaustive(const TwoWayInput& input, int cells_per_s, double offset_step_s) {
+  return Search(input, cells_per_s, offset_step_s).run();
+}
 
 TwoWayInput random_corridor(std::mt19937& random, const Kind& kind) {
   const auto pick = [&](int from, int to) { return std::uniform_int_distribution<int>(from, to)(random); };
   const auto chance = [&](int percent) { return pick(1, 100) <= percent; };
-  const auto time = [&](int from, int to) { return static_cast<double>(pick(from * kind.cells_per_s, to * kind.cells_per_s)) / kind.cells_per_s; };
+  const auto time = [&](int from, int to) {
+    return static_cast<double>(pick(from * kind.cells_per_s, to * kind.cells_per_s)) / kind.cells_per_s;
+  };
   TwoWayInput input;
   const int half = pick(4, 6);
   input.cycle_s = 2 * half;
@@ -213,8 +247,10 @@ TwoWayInput random_corridor(std::mt19937& random, const Kind& kind) {
   const auto windows = [&](bool half_period) {
     const int period = half_period ? half : 2 * half;
     std::vector<Window> list;
-    if (kind.open && chance(15)) list.push_back({0, input.cycle_s});
-    else list.push_back({time(0, 2 * half - 1), time(1, period - 2)});
+    if (kind.open && chance(15))
+      list.push_back({0, input.cycle_s});
+    else
+      list.push_back({time(0, 2 * half - 1), time(1, period - 2)});
     if (kind.second_windows && !half_period && chance(50)) list.push_back({time(0, 2 * half - 1), time(1, half - 1)});
     if (half_period && list[0].duration_s < input.cycle_s) list.push_back({list[0].start_s + half, list[0].duration_s});
     return list;
@@ -223,7 +259,8 @@ TwoWayInput random_corridor(std::mt19937& random, const Kind& kind) {
     TwoWayStation station;
     station.half_period = kind.half_periods && chance(30);
     const int options = kind.orders ? pick(1, 3) : 1;
-    for (int o = 0; o < options; ++o) station.options.push_back({windows(station.half_period), windows(station.half_period)});
+    for (int o = 0; o < options; ++o)
+      station.options.push_back({windows(station.half_period), windows(station.half_period)});
     if (kind.clearances && chance(50)) station.forward_clearance_s = time(0, 2);
     if (kind.clearances && chance(50)) station.backward_clearance_s = time(0, 2);
     if (kind.fixed && chance(40)) station.fixed_offset_s = pick(0, (station.half_period ? half : 2 * half) - 1);
@@ -242,8 +279,11 @@ std::string text(const TwoWayInput& input) {
   out << "C " << input.cycle_s << " weights " << input.forward_weight << ':' << input.backward_weight;
   for (std::size_t i = 0; i < input.stations.size(); ++i) {
     const TwoWayStation& station = input.stations[i];
-    if (i > 0) out << " -- " << input.forward_travel_s[i - 1] << '/' << (input.one_way ? 0 : input.backward_travel_s[i - 1]) << " --";
-    out << (station.half_period ? " half" : "") << " clear " << station.forward_clearance_s << '/' << station.backward_clearance_s;
+    if (i > 0)
+      out << " -- " << input.forward_travel_s[i - 1] << '/' << (input.one_way ? 0 : input.backward_travel_s[i - 1])
+          << " --";
+    out << (station.half_period ? " half" : "") << " clear " << station.forward_clearance_s << '/'
+        << station.backward_clearance_s;
     if (station.fixed_offset_s) out << " at " << *station.fixed_offset_s;
     if (station.fixed_option) out << " option " << *station.fixed_option;
     for (const StationOption& option : station.options) {

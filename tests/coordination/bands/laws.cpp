@@ -76,7 +76,8 @@ TEST_CASE("the same shift of every offset changes no width", "[bands]") {
     const auto again = evaluate_bands(input, options_of(*answer), shifted);
     REQUIRE(again);
     for (int d = 0; d < 2; ++d)
-      CHECK(again->corridors[0].directions[static_cast<std::size_t>(d)].width_s == Approx(answer->corridors[0].directions[static_cast<std::size_t>(d)].width_s).margin(1e-8));
+      CHECK(again->corridors[0].directions[static_cast<std::size_t>(d)].width_s ==
+            Approx(answer->corridors[0].directions[static_cast<std::size_t>(d)].width_s).margin(1e-8));
   }
 }
 
@@ -103,7 +104,8 @@ TEST_CASE("a wider window never lowers the share", "[bands]") {
     TwoWayStation& station = input.stations[static_cast<std::size_t>(round) % input.stations.size()];
     if (station.half_period) continue;
     for (StationOption& option : station.options)
-      for (Window& window : round % 2 ? option.forward : option.backward) window.duration_s = std::min(input.cycle_s, window.duration_s + 0.3);
+      for (Window& window : round % 2 ? option.forward : option.backward)
+        window.duration_s = std::min(input.cycle_s, window.duration_s + 0.3);
     const auto after = solve_two_way(input);
     REQUIRE(before);
     REQUIRE(after);
@@ -118,10 +120,12 @@ TEST_CASE("no band is wider than the shortest window, whole seconds cost at most
     const auto answer = solve_two_way(input), whole = solve_two_way_whole_seconds(input);
     REQUIRE(answer);
     REQUIRE(whole);
-    for (const DirectionAnswer& direction : answer->corridors[0].directions) CHECK(direction.width_s <= direction.least_window_s + 1e-9);
+    for (const DirectionAnswer& direction : answer->corridors[0].directions)
+      CHECK(direction.width_s <= direction.least_window_s + 1e-9);
     const double most = std::max(1 / input.forward_weight, 1 / input.backward_weight);
     CHECK(whole->corridors[0].share_s <= answer->corridors[0].share_s + 1e-9);
-    if (answer->corridors[0].all_directions) CHECK(whole->corridors[0].share_s >= std::max(0.0, answer->corridors[0].share_s - most) - 1e-9);
+    if (answer->corridors[0].all_directions)
+      CHECK(whole->corridors[0].share_s >= std::max(0.0, answer->corridors[0].share_s - most) - 1e-9);
     CHECK(whole->corridors[0].share_bound_s == Approx(answer->corridors[0].share_s).margin(1e-8));
   }
 }
@@ -145,14 +149,16 @@ TEST_CASE("inside its freedom an offset costs nothing, beyond it the stated loss
   for (int round = 0; round < 60; ++round) {
     TwoWayInput input = corridor(random, round);
     for (TwoWayStation& station : input.stations)
-      for (StationOption& option : station.options) option.forward.resize(station.half_period ? 2 : 1), option.backward.resize(station.half_period ? 2 : 1);
+      for (StationOption& option : station.options)
+        option.forward.resize(station.half_period ? 2 : 1), option.backward.resize(station.half_period ? 2 : 1);
     const auto answer = solve_two_way(input);
     REQUIRE(answer);
     const double before = total(*answer);
     for (std::size_t s = 0; s < answer->stations.size(); ++s) {
       const StationAnswer& station = answer->stations[s];
       for (const bool late : {false, true}) {
-        const double range = late ? station.late_s : station.early_s, loss = late ? station.late_loss : station.early_loss;
+        const double range = late ? station.late_s : station.early_s,
+                     loss = late ? station.late_loss : station.early_loss;
         const auto shifted = [&](double by) {
           std::vector<double> offsets = offsets_of(*answer);
           offsets[s] += late ? by : -by;
@@ -183,7 +189,8 @@ TEST_CASE("witness stations alone rule out more", "[bands]") {
     // Only the witnesses keep their windows.
     for (Direction& direction : problem.corridors[0].directions)
       for (Stop& stop : direction.stops)
-        if (std::find(corridor_answer.witness.begin(), corridor_answer.witness.end(), stop.station) == corridor_answer.witness.end())
+        if (std::find(corridor_answer.witness.begin(), corridor_answer.witness.end(), stop.station) ==
+            corridor_answer.witness.end())
           for (auto& windows : stop.windows) windows = {{0, input.cycle_s}};
     const auto relaxed = solve_joint(problem);
     REQUIRE(relaxed);
@@ -212,7 +219,8 @@ TEST_CASE("clock errors: what is guaranteed and what each station bears", "[band
   for (int round = 0; round < 200; ++round) {
     std::vector<FrameWindow> list;
     std::vector<double> error;
-    for (int i = 0; i < 4; ++i) list.push_back({-number(random), 10 + number(random)}), error.push_back(number(random) / 2);
+    for (int i = 0; i < 4; ++i)
+      list.push_back({-number(random), 10 + number(random)}), error.push_back(number(random) / 2);
     double worst = 1e9;
     for (int signs = 0; signs < 16; ++signs) {
       double left = -1e9, right = 1e9;

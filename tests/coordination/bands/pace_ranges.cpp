@@ -25,7 +25,9 @@ PaceInput random_paces(std::mt19937& random, int stations, double range) {
   return input;
 }
 
-double share(const PaceAnswer& answer) { return answer.bands.corridors[0].all_directions ? answer.bands.corridors[0].share_s : 0; }
+double share(const PaceAnswer& answer) {
+  return answer.bands.corridors[0].all_directions ? answer.bands.corridors[0].share_s : 0;
+}
 
 }  // namespace
 
@@ -62,7 +64,8 @@ TEST_CASE("no sampled paces within the limits do better", "[bands]") {
         double pace = std::uniform_real_distribution<double>(0.05, 0.07)(random);
         for (std::size_t k = 0; k < input.links.size(); ++k) {
           (*travel)[k] = pace * input.links[k].length_m;
-          pace = std::clamp(pace + std::uniform_real_distribution<double>(-1, 1)(random) * input.most_change_s_per_m, 0.05, 0.07);
+          pace = std::clamp(pace + std::uniform_real_distribution<double>(-1, 1)(random) * input.most_change_s_per_m,
+                            0.05, 0.07);
         }
       }
       const auto answer = solve_two_way(corridor);

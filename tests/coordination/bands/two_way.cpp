@@ -31,10 +31,12 @@ const CorridorAnswer& only(const Answer& answer) { return answer.corridors.at(0)
 void check_consistent(const TwoWayInput& input, const Answer& answer) {
   std::vector<int> options;
   std::vector<double> offsets;
-  for (const StationAnswer& station : answer.stations) options.push_back(station.option), offsets.push_back(station.offset_s);
+  for (const StationAnswer& station : answer.stations)
+    options.push_back(station.option), offsets.push_back(station.offset_s);
   const auto again = evaluate_bands(input, options, offsets);
   REQUIRE(again);
-  for (std::size_t d = 0; d < only(answer).directions.size(); ++d) CHECK(only(*again).directions[d].width_s == only(answer).directions[d].width_s);
+  for (std::size_t d = 0; d < only(answer).directions.size(); ++d)
+    CHECK(only(*again).directions[d].width_s == only(answer).directions[d].width_s);
   for (std::size_t i = 0; i < input.stations.size(); ++i) {
     if (input.stations[i].fixed_offset_s) CHECK(offsets[i] == Approx(*input.stations[i].fixed_offset_s));
     if (input.stations[i].fixed_option) CHECK(options[i] == *input.stations[i].fixed_option);
