@@ -4,6 +4,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <map>
 #include <set>
 
 #include "base/natural_order.hpp"
@@ -142,15 +143,20 @@ class NetworkBuilder {
     m_intersections.push_back(std::move(x));
   }
 
+  // "Main Street at First Avenue": the more important street first, then the wider, then by name.
   static std::string streets_of(const Signal& signal) {
-    std::vector<std::string> names;
-    for (const auto wanted : {true, false})  // the wider street first
-      for (const Leg& leg : signal.legs) {
-        const bool major = leg.road_class <= RoadClass::secondary;
-        if (!leg.street.empty() && major == wanted && std::find(names.begin(), names.end(), leg.street) == names.end()) names.push_back(leg.street);
-      }
-    if (names.empty()) return "unnamed streets";
-    return names.size() == 1 ? names[0] : names[0] + " at " + names[1];
+    std::map<std::string, std::pair<int, int>> rank;  // class, minus lanes
+    for (const Leg& leg : signal.legs) {
+      if (leg.street.empty()) continue;
+      auto& [road_class, lanes] = rank.emplace(leg.street, std::pair{static_cast<int>(leg.road_class), 0}).first->second;
+      road_class = std::min(road_class, static_cast<int>(leg.road_class));
+      lanes -= leg.lanes_in + leg.lanes_out;
+    }
+    std::vector<std::pair<std::pair<int, int>, std::string>> order;
+    for (const auto& [name, key] : rank) order.push_back({key, name});
+    std::sort(order.begin(), order.end());
+    if (order.empty()) return "unnamed streets";
+    return order.size() == 1 ? order[0].second : order[0].second + " at " + order[1].second;
   }
 
   void name_signals() {
