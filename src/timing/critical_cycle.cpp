@@ -126,13 +126,16 @@ std::string bounds_text(const CriticalCycle& cycle, double target) {
   return text;
 }
 
-// Which minimums need the least cycle: the longest rings, or the clique whose cheapest order is longest.
+// Which minimums need the least cycle: the longest rings, or a smallest set of groups that fits no shorter one.
 std::string minimum_text(const SignalDesign& design, const std::vector<double>& flows_vph, int minimum_s) {
   if (design.ring_barrier) return "groups " + longest_sides(design, flows_vph).text;
   std::vector<std::string> names;
-  for (const int g : vehicle_groups(design))
-    names.push_back(design.groups[static_cast<std::size_t>(g)].id + " (" + std::to_string(least_split_s(design.groups[static_cast<std::size_t>(g)])) + " s)");
-  return "least splits of groups " + list_of(names) + " and their pedestrians fit no order shorter than " + std::to_string(minimum_s) + " s";
+  for (const int g : clashing_groups(design, minimum_s - 1)) {
+    const Group& group = design.groups[static_cast<std::size_t>(g)];
+    const bool walks = group.kind == GroupKind::pedestrian;
+    names.push_back(group.id + " (" + (walks ? number_text(pedestrian_occupancy(group).seconds(), 1) : std::to_string(least_split_s(group))) + " s)");
+  }
+  return "groups " + list_of(names) + " with their intergreens need " + std::to_string(minimum_s) + " s";
 }
 
 Diagnostics target_errors(const SignalDesign& design, const std::vector<double>& flows_vph, double target) {

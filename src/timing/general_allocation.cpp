@@ -123,18 +123,52 @@ void sort_and_thin(std::vector<Allocation>& found) {
   std::erase_if(found, [&](const Allocation& a) { return !seen.insert(a.order).second; });
 }
 
+// Holds every vehicle group at its fixed split.
+Diagnostics fix_splits(const SignalDesign& design, const AllocationRequest& request, PeriodicModel& model) {
+  Diagnostics found;
+  for (std::size_t g = 0; g < request.fixed_splits.size(); ++g) {
+    if (model.end[g] < 0) continue;
+    const Tenths split = request.fixed_splits[g];
+    if (!split.is_whole_second() || split < Tenths::from_seconds(model.least_split_s[g]) || split > request.cycle) {
+      found.push_back(error("signal " + design.signal + ", group " + design.groups[g].id, "a fixed split of " + number_text(split.seconds(), 1) + " s",
+                            "whole seconds, at least " + std::to_string(model.least_split_s[g]) + ", at most the cycle", "Correct the split or free it."));
+      continue;
+    }
+    model.least_split_s[g] = split.count / 10;
+    model.problem.always.push_back({model.end[g], model.start[g], -split.count / 10});
+  }
+  return found;
+}
+
+Diagnostic splits_do_not_fit(const SignalDesign& design, const AllocationRequest& request) {
+  return error("signal " + design.signal, "fixed splits that no order fits into a cycle of " + number_text(request.cycle.seconds(), 1) + " s", "splits that leave every intergreen",
+               "Shorten a split, lengthen the cycle, or free the splits.");
+}
+
+Result<std::vector<Allocation>> in_fixed_sequence(const SignalDesign& design, const AllocationRequest& request, std::vector<Allocation> found) {
+  if (request.fixed_sequence.empty()) return found;
+  std::vector<std::string> orders;
+  for (const Allocation& allocation : found) orders.push_back(allocation.order);
+  std::erase_if(found, [&](const Allocation& a) { return a.order != request.fixed_sequence; });
+  if (found.empty())
+    return failure(error("signal " + design.signal, "the fixed sequence \"" + printable(request.fixed_sequence) + "\"", "one of its orders: " + list_of(orders),
+                         "Write the order as there (starts of green: + together, > one after the other), or free it."));
+  return found;
+}
+
 }  // namespace
 
 Result<std::vector<Allocation>> allocate_general(const SignalDesign& design, const AllocationRequest& request) {
-  const int cycle_s = request.cycle.count / 10;
-  const PeriodicModel model = periodic_model(design, cycle_s);
+  PeriodicModel model = periodic_model(design, request.cycle.count / 10);
   if (model.contradictory)
     return failure(error("signal " + design.signal, "a pedestrian group that conflicts with the group it runs with", "another parent", "Name another group for the crossing."));
+  Diagnostics refused = fix_splits(design, request, model);
+  if (!refused.empty()) return failure(std::move(refused));
   if (model.anchor < 0) return std::vector<Allocation>{finished(design, request, model, nullptr)};
-  const std::vector<FlowDemand> flows = flows_of(design, model, request.flows_vph);
+  const std::vector<FlowDemand> flows = request.fixed_splits.empty() ? flows_of(design, model, request.flows_vph) : std::vector<FlowDemand>{};
   const auto base = closure_of(model.problem);
   const auto best = base ? fair_splits(model, *base, flows) : std::nullopt;
-  if (!best) return failure(does_not_fit(design, request));
+  if (!best) return failure(request.fixed_splits.empty() ? does_not_fit(design, request) : splits_do_not_fit(design, request));
   const Closure closure = grown(model, *base, *best, design.reference_group);
   std::vector<Allocation> found{finished(design, request, model, &closure)};
   for (Allocation& other : alternatives(design, request, model, *base, *best, flows)) found.push_back(std::move(other));
@@ -145,13 +179,33 @@ Result<std::vector<Allocation>> allocate_general(const SignalDesign& design, con
   });
   sort_and_thin(found);
   if (found.empty()) return failure(error("signal " + design.signal, "only orders that would trap an opposed turn", "one that does not", "Protect the opposed turn or give its group a green that ends with the opposing one."));
-  return found;
+  return in_fixed_sequence(design, request, std::move(found));
 }
 
 bool fits_some_order(const PeriodicModel& model, const std::vector<int>& split_s) {
   if (!may_fit(model, split_s)) return false;
   auto closure = closure_of(model.problem);
   return closure && add_splits(model, split_s, *closure) && find_order(model.problem.choices, *closure, node_limit).picks.has_value();
+}
+
+std::vector<int> clashing_groups(const SignalDesign& design, int cycle_s) {
+  const auto fits = [&](const SignalDesign& part) {
+    const PeriodicModel model = periodic_model(part, cycle_s);
+    return !model.contradictory && (model.anchor < 0 || fits_some_order(model, model.least_split_s));
+  };
+  if (fits(design)) return {};
+  SignalDesign left = design;
+  std::vector<int> needed;
+  for (int g = 0; g < static_cast<int>(design.groups.size()); ++g) {
+    SignalDesign without = left;
+    std::erase_if(without.conflicts, [&](const Conflict& c) { return c.a == g || c.b == g; });
+    if (without.conflicts.size() == left.conflicts.size()) continue;
+    if (fits(without))
+      needed.push_back(g);
+    else
+      left = std::move(without);
+  }
+  return needed;
 }
 
 std::optional<int> least_general_cycle_s(const SignalDesign& design, int longest_s) {

@@ -37,6 +37,9 @@ bool fits_some_order(const PeriodicModel& model, const std::vector<int>& split_s
 
 [[nodiscard]] Result<std::vector<Allocation>> allocate_general(const SignalDesign& design, const AllocationRequest& request);
 
+// A smallest set of groups whose minimums and conflicts alone do not fit the cycle (without any one of them they would); empty if all fit.
+std::vector<int> clashing_groups(const SignalDesign& design, int cycle_s);
+
 // Smallest whole-second cycle, at most `longest_s`, at which every minimum fits; nothing if there is none.
 std::optional<int> least_general_cycle_s(const SignalDesign& design, int longest_s);
 

@@ -50,6 +50,33 @@ void four_legs_least_cycle(benchmark::State& state) {
 }
 BENCHMARK(four_legs_least_cycle)->Arg(0)->Arg(1)->Unit(benchmark::kMicrosecond);
 
+// Sixteen groups of eight approaches, each with a turn; neighbours and crossing paths conflict, opposite throughs do not.
+SignalDesign eight_legs() {
+  std::vector<Group> groups;
+  for (int g = 0; g < 16; ++g) groups.push_back(sample::vehicle("g" + std::to_string(g), 5, 3.6, 1.4, g));
+  SignalDesign design = sample::bare(groups);
+  for (int a = 0; a < 16; ++a)
+    for (int b = a + 1; b < 16; ++b) {
+      const int apart = (b / 2 - a / 2 + 8) % 8;
+      const bool opposite = apart == 4 && a % 2 == b % 2, same = apart == 0, beside = (apart == 1 || apart == 7) && a % 2 == 1 && b % 2 == 1;
+      if (!opposite && !same && !beside) sample::conflict(design, a, b);
+    }
+  return design;
+}
+
+void eight_legs_general(benchmark::State& state) {
+  const SignalDesign design = eight_legs();
+  std::vector<double> y;
+  for (int g = 0; g < 16; ++g) y.push_back(0.02 + 0.01 * (g * 7 % 5));
+  const auto request = sample::request(static_cast<int>(state.range(0)), y);
+  for (auto _ : state) {
+    auto plans = allocate(design, request);
+    state.counters["fits"] = plans.has_value();
+    state.counters["proved"] = plans.has_value() && plans->front().proved;
+  }
+}
+BENCHMARK(eight_legs_general)->Arg(120)->Arg(180)->Unit(benchmark::kMillisecond)->Iterations(1);
+
 }  // namespace
 
 BENCHMARK_MAIN();

@@ -213,3 +213,48 @@ TEST_CASE("people with a green of their own", "[timing]") {
   CHECK(plans->front().groups[0].split == Tenths{380});  // 60 - 7 - 12 - 3
   CHECK(least_general_cycle_s(design, 600) == 15 + 22);
 }
+
+TEST_CASE("the clashing groups are a smallest set", "[timing]") {
+  CHECK(rc::check([] {
+    const Small small = random_small(6);
+    const auto least = least_general_cycle_s(small.design, 300);
+    RC_ASSERT(least.has_value());
+    if (*least < 2) return;
+    const std::vector<int> clash = clashing_groups(small.design, *least - 1);
+    RC_ASSERT(!clash.empty());
+    RC_ASSERT(clashing_groups(small.design, *least).empty());
+    for (const int leave_out : clash) {  // without any one of them the rest of the set fits
+      SignalDesign part = small.design;
+      std::erase_if(part.conflicts, [&](const Conflict& c) {
+        const auto in = [&](int g) { return g != leave_out && std::find(clash.begin(), clash.end(), g) != clash.end(); };
+        return !in(c.a) || !in(c.b);
+      });
+      RC_ASSERT(clashing_groups(part, *least - 1).empty());
+    }
+  }));
+}
+
+TEST_CASE("fixed order and splits of general groups are honoured or refused", "[timing]") {
+  SignalDesign design = sample::bare({sample::vehicle("A", 5, 3, 1, 0), sample::vehicle("B", 5, 3, 1, 1), sample::vehicle("C", 5, 3, 1, 2)});
+  for (const auto& [a, b] : std::vector<std::pair<int, int>>{{0, 1}, {0, 2}, {1, 2}}) sample::conflict(design, a, b);
+  auto request = sample::request(60, {.2, .2, .2});
+  CHECK(allocate(design, request)->size() == 2);
+  request.fixed_sequence = "A>C>B";
+  const auto plans = allocate(design, request);
+  REQUIRE(plans.has_value());
+  CHECK(plans->size() == 1);
+  request.fixed_sequence = "A>B";
+  CHECK(sample::text_of(allocate(design, request).error()).find("A>B>C and A>C>B") != std::string::npos);
+  request.fixed_sequence.clear();
+  request.fixed_splits = {Tenths{300}, Tenths{150}, Tenths{150}};
+  const auto fixed = allocate(design, request);
+  REQUIRE(fixed.has_value());
+  for (const Allocation& plan : *fixed) {
+    CHECK(plan.groups[0].split == Tenths{300});
+    CHECK(judge::faults(design, 60, plan).empty());
+  }
+  request.fixed_splits[1] = Tenths{160};
+  CHECK(sample::text_of(allocate(design, request).error()).find("no order fits") != std::string::npos);
+  request.fixed_splits[1] = Tenths{80};
+  CHECK(sample::text_of(allocate(design, request).error()).find("at least 9") != std::string::npos);
+}
