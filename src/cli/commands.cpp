@@ -8,7 +8,7 @@ const std::vector<Command>& commands() {
       {"import", "Roads to a network: signals, links, movements, corridors, and every default that was used", declare_import},
       {"draft", "A coordinated timing plan for every period, with sheets, diagrams and a page", declare_draft},
       {"review", "Re-check a plan's safety and claims by other code than made it", declare_review},
-      // {"compare", "A complete plan for each cycle length, side by side", declare_compare},
+      {"compare", "A complete plan for each cycle length, side by side", declare_compare},
       {"sheet", "Timing sheets, diagrams and a page from plans", declare_sheet},
       {"offsets", "For experts: the bare offset engine on a problem file", declare_offsets},
   };
