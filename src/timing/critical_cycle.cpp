@@ -85,18 +85,19 @@ bool ring_holds(const SignalDesign& design, const std::vector<int>& splits, int 
   return total <= cycle_s;
 }
 
-bool holds(const SignalDesign& design, const std::vector<int>& splits, int cycle_s) {
+bool holds(const SignalDesign& design, const std::vector<int>& splits, int cycle_s, std::int64_t& nodes_left) {
   if (design.ring_barrier) return ring_holds(design, splits, cycle_s);
   const PeriodicModel model = periodic_model(design, cycle_s);
   if (model.anchor < 0) return true;
-  return fits_some_order(model, splits);
+  return fits_some_order(model, splits, nodes_left);
 }
 
 int saturation_minimum_s(const SignalDesign& design, const std::vector<double>& flows_vph, double target, const Critical& critical, int least_s) {
   if (!(critical.ratio < target)) return 0;
   const double bound = cycle_for_saturation_s(std::max(0.0, critical.lost_s), critical.ratio, target);
-  for (int cycle_s = std::max(least_s, static_cast<int>(std::min(bound, 1e6))); cycle_s <= longest_cycle_s; ++cycle_s)
-    if (holds(design, splits_at(design, flows_vph, target, cycle_s), cycle_s)) return cycle_s;
+  std::int64_t nodes_left = 5'000;  // of all cycles looked at together
+  for (int cycle_s = std::max(least_s, static_cast<int>(std::min(bound, 1e6))); cycle_s <= longest_cycle_s && nodes_left > 0; ++cycle_s)
+    if (holds(design, splits_at(design, flows_vph, target, cycle_s), cycle_s, nodes_left)) return cycle_s;
   return 0;
 }
 

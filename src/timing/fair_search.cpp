@@ -9,7 +9,7 @@
 namespace entrain::timing {
 namespace {
 
-constexpr std::int64_t node_limit = 100'000;  // nodes of one order search
+constexpr std::int64_t most_nodes = 10'000;  // of all order searches together, so that no signal takes more than about a second
 
 // Fixes the level of the worst group, then of the next, trying every group that can be the one where several tie.
 class FairSearch {
@@ -39,7 +39,7 @@ class FairSearch {
     }
     Closure closure = m_base;
     if (!add_splits(m_model, splits, closure)) return false;
-    const SearchResult result = find_order(m_model.problem.choices, closure, node_limit);
+    const SearchResult result = find_order(m_model.problem.choices, closure, m_nodes_left);
     m_complete = m_complete && result.complete;
     if (!result.picks) return false;
     m_last_picks = *result.picks;
@@ -124,6 +124,7 @@ class FairSearch {
   std::vector<int> m_last_picks;
   FairSplits m_best;
   bool m_complete = true;
+  std::int64_t m_nodes_left = most_nodes;
 };
 
 }  // namespace

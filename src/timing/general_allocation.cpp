@@ -16,7 +16,7 @@
 namespace entrain::timing {
 namespace {
 
-constexpr std::int64_t node_limit = 100'000;  // nodes of one order search
+constexpr std::int64_t most_nodes = 2'000;    // of one order search
 constexpr std::size_t most_orders = 24;       // orders looked at as alternatives
 
 std::vector<FlowDemand> flows_of(const SignalDesign& design, const PeriodicModel& model, const std::vector<double>& flows_vph) {
@@ -106,7 +106,8 @@ std::vector<Allocation> alternatives(const SignalDesign& design, const Allocatio
   Closure within = base;
   std::vector<Allocation> found;
   if (!add_splits(model, splits, within)) return found;
-  for (const auto& picks : all_orders(model.problem.choices, within, most_orders, node_limit).picks) {
+  std::int64_t nodes_left = most_nodes;
+  for (const auto& picks : all_orders(model.problem.choices, within, most_orders, nodes_left).picks) {
     const auto fair = fair_splits_in_order(model, base, flows, picks);
     if (!fair) continue;
     const Closure closure = grown(model, base, *fair, design.reference_group);
@@ -182,16 +183,17 @@ Result<std::vector<Allocation>> allocate_general(const SignalDesign& design, con
   return in_fixed_sequence(design, request, std::move(found));
 }
 
-bool fits_some_order(const PeriodicModel& model, const std::vector<int>& split_s) {
+bool fits_some_order(const PeriodicModel& model, const std::vector<int>& split_s, std::int64_t& nodes_left) {
   if (!may_fit(model, split_s)) return false;
   auto closure = closure_of(model.problem);
-  return closure && add_splits(model, split_s, *closure) && find_order(model.problem.choices, *closure, node_limit).picks.has_value();
+  return closure && add_splits(model, split_s, *closure) && find_order(model.problem.choices, *closure, nodes_left).picks.has_value();
 }
 
 std::vector<int> clashing_groups(const SignalDesign& design, int cycle_s) {
   const auto fits = [&](const SignalDesign& part) {
     const PeriodicModel model = periodic_model(part, cycle_s);
-    return !model.contradictory && (model.anchor < 0 || fits_some_order(model, model.least_split_s));
+    std::int64_t nodes_left = most_nodes;
+    return !model.contradictory && (model.anchor < 0 || fits_some_order(model, model.least_split_s, nodes_left));
   };
   if (fits(design)) return {};
   SignalDesign left = design;
@@ -213,7 +215,8 @@ std::optional<int> least_general_cycle_s(const SignalDesign& design, int longest
     const PeriodicModel model = periodic_model(design, cycle_s);
     if (model.contradictory) return false;
     if (model.anchor < 0) return true;
-    return fits_some_order(model, model.least_split_s);
+    std::int64_t nodes_left = most_nodes;
+    return fits_some_order(model, model.least_split_s, nodes_left);
   };
   if (!fits(longest_s)) return std::nullopt;
   int low = 1, high = longest_s;

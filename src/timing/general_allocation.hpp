@@ -32,8 +32,8 @@ bool may_fit(const PeriodicModel& model, const std::vector<int>& split_s);
 // Adds `split_s[g]` as least split of every vehicle group g; false if that contradicts what holds.
 bool add_splits(const PeriodicModel& model, const std::vector<int>& split_s, Closure& closure);
 
-// Whether some order holds vehicle groups with these least splits.
-bool fits_some_order(const PeriodicModel& model, const std::vector<int>& split_s);
+// Whether some order holds vehicle groups with these least splits. Where the nodes run out the answer is no: the safe side.
+bool fits_some_order(const PeriodicModel& model, const std::vector<int>& split_s, std::int64_t& nodes_left);
 
 [[nodiscard]] Result<std::vector<Allocation>> allocate_general(const SignalDesign& design, const AllocationRequest& request);
 

@@ -44,11 +44,12 @@ int room(const Closure& closure, const std::vector<Difference>& alternative) {
 
 class Search {
  public:
-  Search(const std::vector<Choice>& choices, std::int64_t limit) : m_choices(choices), m_left(limit) {}
+  Search(const std::vector<Choice>& choices, std::int64_t& nodes_left) : m_choices(choices), m_left(nodes_left) {}
 
   // Calls `found` at every complete order; stops when it returns false. Returns false when stopped or out of nodes.
   bool run(Closure closure, std::vector<int> picks, const std::function<bool(const std::vector<int>&)>& found) {
-    if (--m_left < 0) return m_complete = false;
+    if (m_left <= 0) return m_complete = false;
+    --m_left;
     if (!draw_consequences(closure, picks)) return true;
     const auto open = tightest(closure, picks);
     if (!open) return found(picks);
@@ -109,7 +110,7 @@ class Search {
   }
 
   const std::vector<Choice>& m_choices;
-  std::int64_t m_left;
+  std::int64_t& m_left;
   bool m_complete = true;
 };
 
@@ -128,9 +129,9 @@ std::optional<Closure> closure_of(const std::vector<Choice>& choices, const Clos
   return closure;
 }
 
-SearchResult find_order(const std::vector<Choice>& choices, const Closure& base, std::int64_t limit) {
+SearchResult find_order(const std::vector<Choice>& choices, const Closure& base, std::int64_t& nodes_left) {
   SearchResult result;
-  Search search(choices, limit);
+  Search search(choices, nodes_left);
   search.run(base, std::vector<int>(choices.size(), -1), [&](const std::vector<int>& picks) {
     result.picks = picks;
     return false;
@@ -139,9 +140,9 @@ SearchResult find_order(const std::vector<Choice>& choices, const Closure& base,
   return result;
 }
 
-Orders all_orders(const std::vector<Choice>& choices, const Closure& base, std::size_t most, std::int64_t limit) {
+Orders all_orders(const std::vector<Choice>& choices, const Closure& base, std::size_t most, std::int64_t& nodes_left) {
   Orders orders;
-  Search search(choices, limit);
+  Search search(choices, nodes_left);
   bool cut = false;
   search.run(base, std::vector<int>(choices.size(), -1), [&](const std::vector<int>& picks) {
     if (orders.picks.size() == most) {

@@ -50,15 +50,16 @@ struct SearchResult {
   std::optional<std::vector<int>> picks;  // per choice the alternative taken; nothing: no order satisfies all
 };
 
-// Depth first over the choices from what holds in `base`, the tightest first, every consequence drawn at once. `limit`: nodes of the tree.
-SearchResult find_order(const std::vector<Choice>& choices, const Closure& base, std::int64_t limit);
+// Depth first over the choices from what holds in `base`, the tightest first, every consequence drawn at once. `nodes_left`: nodes the
+// search may still open; what it uses is taken off.
+SearchResult find_order(const std::vector<Choice>& choices, const Closure& base, std::int64_t& nodes_left);
 
 // Every combination of picks that satisfies all, at most `most` of them.
 struct Orders {
   bool complete = true;
   std::vector<std::vector<int>> picks;
 };
-Orders all_orders(const std::vector<Choice>& choices, const Closure& base, std::size_t most, std::int64_t limit);
+Orders all_orders(const std::vector<Choice>& choices, const Closure& base, std::size_t most, std::int64_t& nodes_left);
 
 // What always holds; nothing if it contradicts itself.
 std::optional<Closure> closure_of(const OrderProblem& problem);
