@@ -2,6 +2,7 @@
 
 #include "base/number_text.hpp"
 #include "base/quantity.hpp"
+#include "project/count_layouts.hpp"
 #include "project/table_reader.hpp"
 
 namespace entrain::project {
@@ -170,7 +171,10 @@ Result<Noted<std::vector<SignalRow>>> read_signal_rows(const TextGrid& grid, con
                                      {"offset_fixed"}, {"sequence_fixed"}, {"splits_fixed"}, {"traffic_side"}}, columns, signal_row);
 }
 
-Result<Noted<std::vector<MovementRow>>> read_movement_rows(const TextGrid& grid, const Columns& columns) {
+Result<Noted<std::vector<MovementRow>>> read_movement_rows(const TextGrid& grid, const Columns& columns) { return read_movements(grid, columns, {}); }
+
+Result<Noted<std::vector<MovementRow>>> read_movements(const TextGrid& grid, const Columns& columns, const std::vector<Period>& periods) {
+  if (is_count_layout(grid)) return read_count_layouts(grid, {periods, {}, {}}, columns);
   return read_rows<MovementRow>(grid, {{"period"}, {"signal", true}, {"approach", true}, {"turn", true}, {"from"}, {"volume_vph", true}, {"lane_group"}, {"lanes"},
                                        {"saturation_flow_vph"}, {"heavy_vehicle_pct"}, {"peak_hour_factor"}, {"group"}, {"storage_m"}, {"storage_ft"}, {"control"},
                                        {"turn_treatment"}}, columns, movement_row);

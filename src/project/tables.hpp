@@ -99,6 +99,8 @@ struct Tables {
 // (our column -> theirs), reports unknown columns as warnings, and every bad cell as an error with row, column, value, expected, mend.
 [[nodiscard]] Result<Noted<std::vector<SignalRow>>> read_signal_rows(const TextGrid& grid, const std::map<std::string, std::string>& columns = {});
 [[nodiscard]] Result<Noted<std::vector<MovementRow>>> read_movement_rows(const TextGrid& grid, const std::map<std::string, std::string>& columns = {});
+// The same, or a count sheet (see count_layouts.hpp) with the peak hour within each of `periods`; read_movement_rows takes one for all periods.
+[[nodiscard]] Result<Noted<std::vector<MovementRow>>> read_movements(const TextGrid& grid, const std::map<std::string, std::string>& columns, const std::vector<Period>& periods);
 [[nodiscard]] Result<Noted<std::vector<CrossingRow>>> read_crossing_rows(const TextGrid& grid, const std::map<std::string, std::string>& columns = {});
 [[nodiscard]] Result<Noted<std::vector<TravelTimeRow>>> read_travel_time_rows(const TextGrid& grid, const std::map<std::string, std::string>& columns = {});
 [[nodiscard]] Result<Noted<std::vector<TimingRow>>> read_timing_rows(const TextGrid& grid, const std::map<std::string, std::string>& columns = {});

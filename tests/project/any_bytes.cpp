@@ -3,6 +3,7 @@
 
 #include <catch2/catch.hpp>
 
+#include "project/count_layouts.hpp"
 #include "project/validate.hpp"
 #include "texts.hpp"
 
@@ -67,6 +68,7 @@ TEST_CASE("any cells as a table give rows or errors, and a cell of 10 MB is cut 
       for (int c = *rc::gen::inRange(0, 7); c > 0; --c) table.rows.back().push_back(any_cell());
     }
     (void)read_signal_rows(table), (void)read_movement_rows(table), (void)read_crossing_rows(table), (void)read_travel_time_rows(table), (void)read_timing_rows(table), (void)read_conflict_rows(table);
+    (void)read_count_layouts(table, {});
   }));
   TextGrid table{"t.csv", {{"signal", "lon", "lat"}, {"T1", std::string(10 << 20, '7'), "1"}, {std::string(10 << 20, 'h')}}};
   const std::string problems = problems_of(read_signal_rows(table));
