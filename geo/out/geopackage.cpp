@@ -2,11 +2,11 @@
 
 #include <cpl_conv.h>
 #include <cpl_error.h>
-#include <fmt/chrono.h>
 #include <fmt/format.h>
 #include <gdal_priv.h>
 #include <ogrsf_frmts.h>
 
+#include <chrono>
 #include <cmath>
 #include <filesystem>
 #include <functional>
@@ -201,7 +201,15 @@ bool write_styles(GDALDataset& data, const std::string& now) {
   return true;
 }
 
-std::string date_text(std::int64_t epoch) { return fmt::format("{:%Y-%m-%dT%H:%M:%S}.000Z", fmt::gmtime(static_cast<std::time_t>(epoch))); }
+// Seconds since 1970 as a date, without asking any clock.
+std::string date_text(std::int64_t epoch) {
+  const std::chrono::sys_seconds when{std::chrono::seconds{epoch}};
+  const auto day = std::chrono::floor<std::chrono::days>(when);
+  const std::chrono::year_month_day date{day};
+  const std::chrono::hh_mm_ss time{when - day};
+  return fmt::format("{:04}-{:02}-{:02}T{:02}:{:02}:{:02}.000Z", static_cast<int>(date.year()), static_cast<unsigned>(date.month()), static_cast<unsigned>(date.day()), time.hours().count(), time.minutes().count(),
+                     time.seconds().count());
+}
 
 bool write_all(const Network& network, const std::string& path, const std::string& now) {
   GDALDriver* driver = GetGDALDriverManager()->GetDriverByName("GPKG");

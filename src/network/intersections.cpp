@@ -5,6 +5,7 @@
 #include <queue>
 #include <set>
 
+#include "base/circle.hpp"
 #include "network/geometry.hpp"
 
 namespace entrain::network {
@@ -102,7 +103,7 @@ void join_carriageways(std::vector<Arm>& arms) {
       const bool complement = (a.edges.in.empty() && b.edges.out.empty()) || (a.edges.out.empty() && b.edges.in.empty());
       const bool same_name = a.name == b.name || a.name.empty() || b.name.empty();
       if (!complement || !same_name || std::fabs(turn_deg(a.bearing, b.bearing)) > same_leg_deg) continue;
-      a.bearing = std::fmod(a.bearing + turn_deg(a.bearing, b.bearing) / 2 + 360, 360.0);
+      a.bearing = wrap(a.bearing + turn_deg(a.bearing, b.bearing) / 2, 360.0);
       a.edges.in.insert(a.edges.in.end(), b.edges.in.begin(), b.edges.in.end());
       a.edges.out.insert(a.edges.out.end(), b.edges.out.begin(), b.edges.out.end());
       arms.erase(arms.begin() + static_cast<std::ptrdiff_t>(j));
@@ -214,7 +215,7 @@ void add_movements(const RoadGraph& graph, const Cluster& cluster, const Restric
       m.from_leg = static_cast<int>(from);
       m.to_leg = static_cast<int>(to);
       m.approach = approach_of(signal.legs[from].id);
-      m.turn_angle_deg = turn_deg(std::fmod(signal.legs[from].bearing_deg + 180, 360.0), signal.legs[to].bearing_deg);
+      m.turn_angle_deg = turn_deg(wrap(signal.legs[from].bearing_deg + 180, 360.0), signal.legs[to].bearing_deg);
       list.push_back(m);
     }
     std::size_t straightest = 0;

@@ -125,11 +125,14 @@ void TableReader::require_one_of(const std::string& a, const std::string& b) {
                              did_you_mean(a, m_unknown, fmt::format("Add it, or map yours under [columns] as {} = \"...\"", a))));
 }
 
-std::vector<std::size_t> TableReader::data_rows() const {
+std::vector<std::size_t> TableReader::data_rows() {
   std::vector<std::size_t> rows;
   for (std::size_t r = m_header + 1; r < m_grid.rows.size(); ++r) {
     const auto& cells = m_grid.rows[r];
-    if (std::any_of(cells.begin(), cells.end(), [](const std::string& cell) { return !trim(cell).empty(); })) rows.push_back(r + 1);
+    const auto filled = std::count_if(cells.begin(), cells.end(), [](const std::string& cell) { return !trim(cell).empty(); });
+    const bool is_remark = filled == 1 && m_index.size() >= 3 && !cells.empty() && cells[0].find(' ') != std::string::npos;
+    if (is_remark) m_notes.push_back(note(fmt::format("{} row {}", m_grid.source, r + 1), "a line of text, taken as a remark: " + printable(cells[0])));
+    else if (filled > 0) rows.push_back(r + 1);
   }
   return rows;
 }

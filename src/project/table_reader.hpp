@@ -24,7 +24,7 @@ class TableReader {
   bool has_header() const { return m_header < m_grid.rows.size(); }
   bool has(const std::string& column) const { return m_index.count(column) != 0; }
   // Rows below the header that hold anything; 1-based line numbers.
-  std::vector<std::size_t> data_rows() const;
+  std::vector<std::size_t> data_rows();
 
   // Cells of a row; empty, "*" and "-" mean nothing. Problems are collected.
   std::string text(std::size_t row, const std::string& column) const;
