@@ -114,7 +114,7 @@ plan::Plan recomputed_claims(plan::Plan plan) {
   for (plan::Signal& signal : plan.signals)
     for (plan::Group& group : signal.groups) {
       if (group.kind == plan::GroupKind::pedestrian || group.greens.size() != 1) continue;
-      if (group.split_s) group.split_s = group.greens[0].duration_s + group.yellow_s + group.red_clearance_s;
+      if (group.split_s) group.split_s = std::round(10 * (group.greens[0].duration_s + group.yellow_s + group.red_clearance_s)) / 10;
       if (group.degree_of_saturation && group.flow_vph && group.saturation_flow_vph && *group.saturation_flow_vph > 0 && signal.cycle_s > 0) {
         const double effective = std::max(0.0, group.greens[0].duration_s - group.start_up_lost_s.value_or(0) + group.end_gain_s.value_or(0));
         const double capacity = *group.saturation_flow_vph * std::min(1.0, effective / signal.cycle_s);
