@@ -7,7 +7,7 @@
 namespace entrain::bands {
 namespace {
 
-constexpr double longest_cycle_s = 100'000.0;
+constexpr double shortest_cycle_s = 0.001, longest_cycle_s = 100'000.0;
 constexpr double longest_travel_s = 1'000'000.0;
 
 std::string text(double value) {
@@ -22,8 +22,8 @@ class Checker {
 
   Diagnostics run() {
     const double cycle = m_problem.cycle_s;
-    if (!(cycle > 0) || !(cycle <= longest_cycle_s))
-      add("cycle", text(cycle), "a length above 0 and at most 100000 s", "Give the cycle length in seconds.");
+    if (!(cycle >= shortest_cycle_s) || !(cycle <= longest_cycle_s))
+      add("cycle", text(cycle), "0.001 to 100000 s", "Give the cycle length in seconds.");
     if (m_problem.stations.empty()) add("stations", "none", "at least one", "Name the stations.");
     if (m_problem.corridors.empty()) add("corridors", "none", "at least one", "Name a corridor.");
     for (std::size_t i = 0; i < m_problem.stations.size(); ++i) check_station(i);

@@ -129,9 +129,9 @@ class CycleScan {
 
 Diagnostics check_steps(const TwoWayInput& input, const CycleSteps& steps) {
   Diagnostics found;
-  if (!(steps.from_s > 0) || !(steps.to_s >= steps.from_s) || !(steps.to_s <= 100'000.0))
-    found.push_back(
-        error("cycle range", "from and to", "0 < from <= to <= 100000 s", "Give the shortest and the longest cycle."));
+  if (!(steps.from_s >= 0.001) || !(steps.to_s >= steps.from_s) || !(steps.to_s <= 100'000.0))
+    found.push_back(error("cycle range", "from and to", "0.001 <= from <= to <= 100000 s",
+                          "Give the shortest and the longest cycle."));
   if (!(steps.step_s > 0) || (steps.to_s - steps.from_s) / steps.step_s > most_steps)
     found.push_back(
         error("cycle range, step", "a step too small", "above 0 and at most a million steps", "Give a larger step."));

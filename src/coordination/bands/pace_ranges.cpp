@@ -305,9 +305,9 @@ Result<PaceAnswer> solve_pace_ranges(const PaceInput& input) {
 
 Result<PaceAnswer> solve_pace_ranges(const PaceInput& input, const CycleSteps& steps) {
   Diagnostics found = check_paces(input);
-  if (!(steps.from_s > 0) || !(steps.to_s >= steps.from_s) || !(steps.to_s <= 100'000.0) || !(steps.step_s > 0) ||
+  if (!(steps.from_s >= 0.001) || !(steps.to_s >= steps.from_s) || !(steps.to_s <= 100'000.0) || !(steps.step_s > 0) ||
       (steps.to_s - steps.from_s) / steps.step_s > 1e5)
-    found.push_back(error("cycle range", "from, to, step", "0 < from <= to, a step above 0, at most 100000 steps",
+    found.push_back(error("cycle range", "from, to, step", "0.001 <= from <= to, a step above 0, at most 100000 steps",
                           "Correct the range."));
   if (!found.empty()) return failure(std::move(found));
   std::vector<double> cycles, values, paces;

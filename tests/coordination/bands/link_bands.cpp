@@ -72,7 +72,7 @@ TEST_CASE("link bands against the outside solver", "[bands]") {
   REQUIRE(::mkdtemp(folder.data()));
   std::mt19937 random(72);
   int equal = 0, rounds = 0;
-  for (int round = 0; round < 20; ++round) {
+  for (int round = 0; round < 14; ++round) {
     const LinkBandInput input = random_links(random, 3 + round % 3, round % 2 == 1);
     const auto answer = solve_link_bands(input);
     REQUIRE(answer);

@@ -27,7 +27,7 @@ TEST_CASE("one corridor: the share equals the outside solver's", "[bands]") {
   const Folder folder;
   std::mt19937 random(31);
   const std::pair<double, double> weights[] = {{1, 1}, {2, 1}, {1, 3}};
-  for (int round = 0; round < 24; ++round) {
+  for (int round = 0; round < 15; ++round) {
     judge::Kind kind;
     kind.stations = 3 + round % 3;
     kind.cells_per_s = 10;
