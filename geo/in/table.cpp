@@ -74,6 +74,9 @@ Result<project::TextGrid> read_by_gdal(const std::string& path, const std::strin
 }  // namespace
 
 Result<project::TextGrid> read_table(const std::string& path, const std::string& sheet) {
+  std::error_code code;
+  if (const auto mark = path.rfind('#'); sheet.empty() && mark != std::string::npos && mark + 1 < path.size() && !fs::exists(path, code))
+    return read_table(path.substr(0, mark), path.substr(mark + 1));
   if (Diagnostics problems = missing_or_empty(path); !problems.empty()) return failure(std::move(problems));
   const std::string end = ending(path);
   if (end != ".csv" && end != ".tsv" && end != ".txt") return read_by_gdal(path, sheet);

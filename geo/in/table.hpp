@@ -8,8 +8,8 @@
 
 namespace entrain::geo {
 
-// Reads the named sheet or layer, else the only or first one. CSV is read as text (quotes, ragged rows, semicolons or tabs where the first
-// lines show them, UTF-8 with or without a mark). Errors: missing or empty file, UTF-16, no driver, more than 5 million cells.
+// Reads the named sheet or layer (also as "counts.xlsx#AM"), else the only or first one. CSV is read as text (quotes, ragged rows, semicolons or tabs where the first
+// lines show them, UTF-8 with or without a mark). Errors: missing or empty file, no UTF-8, an open quote, no driver, more than 5 million cells.
 [[nodiscard]] Result<project::TextGrid> read_table(const std::string& path, const std::string& sheet = "");
 
 // The CSV part alone, for text in memory.

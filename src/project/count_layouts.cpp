@@ -59,7 +59,7 @@ struct Interval {
 using MovementKey = std::pair<std::string, std::string>;  // approach, turn
 
 struct Sum {
-  bool counted = false;
+  bool counted = false, has_classes = false;
   double total = 0, light = 0, heavy = 0;
   double volume() const { return total > 0 ? total : light + heavy; }
 };
@@ -169,6 +169,7 @@ class Layout {
     std::map<MovementKey, Sum> all;
     for (const Counted& column : m_counted) {
       Sum& sum = all[column.key];
+      sum.has_classes = sum.has_classes || column.counted == CountClass::heavy;
       for (const Interval* interval : hour) {
         if (m_reader->text(interval->row, column.name).empty()) continue;
         sum.counted = true;
@@ -184,7 +185,7 @@ class Layout {
       MovementRow row;
       row.row = hour.front()->row, row.period = period, row.signal = hour.front()->signal, row.approach = key.first, row.turn = key.second;
       if (sum.counted) row.volume_vph = sum.volume() * scale;
-      if (sum.counted && sum.heavy > 0 && sum.volume() > 0) row.heavy_vehicle_pct = std::min(100.0, 100 * sum.heavy / sum.volume());
+      if (sum.has_classes && sum.volume() > 0) row.heavy_vehicle_pct = std::min(100.0, 100 * sum.heavy / sum.volume());
       row.peak_hour_factor = peak_hour_factor;
       rows.push_back(std::move(row));
     }

@@ -86,13 +86,14 @@ TEST_CASE("a gap breaks the hour; less than an hour is scaled and said") {
 }
 
 TEST_CASE("classes give the share of heavy vehicles; people and bicycles are not vehicles") {
-  const auto read = read_count_layouts(grid("px,time_start,time_end,nb_cars_t,nb_truck_t,nb_bus_t,nb_cars_l,nx_peds,nx_bike\n7,2031-05-04T07:00:00,2031-05-04T08:00:00,80,15,5,20,99,9\n"), {},
+  const auto read = read_count_layouts(grid("px,time_start,time_end,nb_cars_t,nb_truck_t,nb_bus_t,nb_cars_l,nb_truck_l,nx_peds,nx_bike\n7,2031-05-04T07:00:00,2031-05-04T08:00:00,80,15,5,20,0,99,9\n"), {},
                                        {{"signal", "px"}});
   REQUIRE(problems_of(read) == "none");
   CHECK(find(read->value, "NB", "T")->signal == "7");
   CHECK(*find(read->value, "NB", "T")->volume_vph == 100);
   CHECK(*find(read->value, "NB", "T")->heavy_vehicle_pct == Approx(20));
   CHECK(*find(read->value, "NB", "L")->volume_vph == 20);
+  CHECK(*find(read->value, "NB", "L")->heavy_vehicle_pct == 0);  // counted, none seen: not the default
   CHECK(text_of(read->notes).rfind("note: t.csv row 1: columns not used: nx_peds, nx_bike\n", 0) == 0);
 }
 
