@@ -6,12 +6,18 @@
 namespace entrain::report {
 namespace {
 
+// "-5.5" and "-1 %" are values.
+bool is_value(std::string_view text) {
+  if (text.size() > 2 && text.substr(text.size() - 2) == " %") text.remove_suffix(2);
+  return text == "-" || parse_number(text).has_value();
+}
+
 bool looks_like_a_formula(std::string_view text) {
   const std::string_view inside = trim(text);
   if (text.empty()) return false;
   const bool starts = std::string_view("=+-@\t\r").find(text.front()) != std::string_view::npos ||
                       (!inside.empty() && std::string_view("=+-@").find(inside.front()) != std::string_view::npos);
-  return starts && text != "-" && !parse_number(text);
+  return starts && !is_value(text);
 }
 
 std::string cleaned(std::string_view text) {

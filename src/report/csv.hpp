@@ -8,7 +8,7 @@
 namespace entrain::report {
 
 // One cell. Quoted where it holds a comma, a quote, a line end or blanks at an end. A text that a spreadsheet would take for a formula
-// (first character = + - @ tab or carriage return, and not a plain number) gets an apostrophe in front. Invalid UTF-8 and control
+// (first character = + - @ tab or carriage return, and not a plain number or percentage) gets an apostrophe in front. Invalid UTF-8 and control
 // characters become U+FFFD.
 std::string csv_cell(std::string_view text);
 

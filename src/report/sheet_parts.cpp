@@ -270,7 +270,7 @@ std::vector<SignalPeriod> periods_of(const std::vector<PlanWithFigures>& periods
 Facts pattern_card(const SignalPeriod& pattern) {
   const plan::Signal& signal = *pattern.signal;
   const plan::Plan& plan = pattern.period->plan;
-  Facts card{"card", isolated(plan.period) + "  " + schedule_text(plan), {}};
+  Facts card{"card", isolated(plan.period) + ", " + schedule_text(plan), {}};
   card.facts.push_back({"Cycle length", seconds_text(signal.cycle_s) + " s", signal.running ? old_text(signal.running->cycle_s) : "", "big"});
   if (signal.cycle_s != plan.cycle_s) card.facts.push_back({"Cycle of the plan", seconds_text(plan.cycle_s) + " s", "", ""});
   if (signal.operation != plan::Operation::free) add_offsets(card, signal);
@@ -290,6 +290,7 @@ Table phase_table(const std::vector<SignalPeriod>& patterns) {
   Table table{"phases", "Phases", {{"Phase"}, {"Serves"}, {"Ring. place", Align::centre}, {"Min green", Align::right}, {"Walk", Align::right}, {"Ped. clear", Align::right},
                                   {"Yellow", Align::right}, {"Red clear", Align::right}}, {}, {}};
   add_period_columns(table, patterns, with_force_off);
+  if (table.columns.size() > 12) table.role = "phases dense";
   for (const std::string& id : groups_in_order(signals_of(patterns)))
     if (has_row(patterns, id)) table.rows.push_back(phase_row(patterns, id, with_force_off));
   table.note = "Seconds. Split = green + yellow + red clearance. \"Yields\": permissive, everything else protected.";

@@ -3,7 +3,7 @@
 #include <algorithm>
 #include <set>
 
-#include "report/plan_view.hpp"
+#include "report/sheet_fit.hpp"
 #include "report/sheet_parts.hpp"
 #include "report/sketch.hpp"
 #include "report/style_sheet.hpp"
@@ -68,19 +68,6 @@ Section back_of(const std::vector<SignalPeriod>& patterns, const SheetOptions& o
   return back;
 }
 
-// Lines of ordinary text that the front needs, roughly: what decides how large its letters can be.
-double lines_of_front(const std::vector<SignalPeriod>& patterns) {
-  const double cards = static_cast<double>((patterns.size() + 2) / 3) * 15;
-  double phases = 3;
-  for (const auto& row : phase_table(patterns).rows) phases += 1.25 * std::max(1.0, text_width(row[1].text, 1) / (patterns.size() > 2 ? 9 : patterns.size() > 1 ? 14 : 24));
-  return 18 + 3 + cards + phases + 8 + 7;
-}
-
-double letters_for(const std::vector<SignalPeriod>& patterns, PageSize page) {
-  const double height_mm = page == PageSize::a4 ? 277 : 259, line_mm_at_one_pt = 0.353 * 1.3;
-  return std::clamp(height_mm / line_mm_at_one_pt / lines_of_front(patterns), 6.5, 10.5);
-}
-
 // 0: checked and no rule is violated.
 int severity(const ReviewSummary& review) {
   if (review.violations > 0) return 3;
@@ -134,7 +121,7 @@ std::vector<OutputFile> timing_sheets(const std::vector<PlanWithFigures>& period
   std::vector<OutputFile> files;
   for (std::size_t i = 0; i < ids.size(); ++i) {
     const Document document = timing_sheet(periods, ids[i], options);
-    const double letters = letters_for(periods_of(periods, ids[i]), options.page);
+    const double letters = letters_for_one_page(std::get<Section>(document.blocks.front().content), options.page);
     files.push_back({names[i] + ".html", html(document, {options.page, false, letters, std::string(sheet_style)})});
     files.push_back({names[i] + ".csv", csv(document)});
   }

@@ -45,14 +45,16 @@ body { max-width: 62rem; }
 .sketch svg { width: 19rem; height: auto; max-height: 17rem; } .sketch { margin: 0; }
 .signed { grid-template-columns: max-content 1fr max-content 1fr; gap: .35rem .6rem; margin: .6rem 0 0; }
 .signed dd { border-bottom: 1px solid #000; min-height: 1.5rem; } .signed dd.seal { border: 1px solid #000; height: 4.6rem; grid-column: span 3; }
-.cards { display: flex; flex-wrap: wrap; gap: .6rem; margin: .6rem 0; }
-.card { flex: 1 1 15rem; border: 1.5px solid #000; padding: .25rem .6rem .35rem; }
+.cards { display: grid; grid-template-columns: repeat(auto-fit, minmax(17rem, 1fr)); gap: .6rem; margin: .6rem 0; }
+.card { border: 1.5px solid #000; padding: .25rem .6rem .35rem; }
 .card h3 { margin: 0 0 .15rem; font-size: 1.25rem; border-bottom: 1px solid #000; }
-.card dl { gap: 0 .6rem; margin: 0; align-items: baseline; } .card dt { font-size: .84rem; line-height: 1.15; }
+.card small { white-space: normal; }
+.card dl { grid-template-columns: minmax(0, max-content) minmax(8.5rem, 1fr); gap: 0 .6rem; margin: 0; align-items: baseline; } .card dt { font-size: .84rem; line-height: 1.15; }
 .card dd { font-size: 1rem; line-height: 1.2; } .card dd.big { font-size: 1.95rem; font-weight: bold; line-height: 1.05; }
 .card dd.middle { font-size: 1.3rem; font-weight: bold; line-height: 1.1; }
-.phases { width: 100%; } .phases td { font-size: 1.12rem; padding: .1rem .35rem; } .phases th { padding: .1rem .35rem; font-size: .8rem; }
+.phases { width: 100%; } .phases td { font-size: 1.12rem; padding: .1rem .35rem; vertical-align: middle; } .phases th { padding: .1rem .35rem; font-size: .8rem; }
 .phases td:first-child { font-weight: bold; font-size: 1.35rem; } .phases td:nth-child(2) { font-size: .92rem; line-height: 1.12; }
+.dense td { font-size: .98rem; padding: .1rem .2rem; } .dense th { font-size: .72rem; padding: .1rem .2rem; }
 .log { width: 100%; } .log td { height: 1.55rem; } .log td:nth-child(3) { width: 55%; }
 .phases .r, .phases .c { white-space: nowrap; } .phases th.r, .phases th.c { white-space: normal; }
 .matrix td, .matrix th { text-align: center; border: 1px solid #999; padding: .1rem .25rem; font-size: .86rem; } .matrix td:first-child { font-weight: bold; }

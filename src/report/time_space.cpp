@@ -167,7 +167,9 @@ std::vector<Point> band_polygon(const Scene& scene, const Trace& trace, double s
   std::vector<Point> points;
   for (std::size_t k = 0; k < trace.times_s.size(); ++k) points.push_back({scene.x(start_s + trace.times_s[k]), scene.y(trace.positions_m[k])});
   for (std::size_t k = trace.times_s.size(); k-- > 0;) points.push_back({scene.x(start_s + trace.times_s[k] + bandwidth_s), scene.y(trace.positions_m[k])});
-  return cut(cut(points, scene.plot.left, true), scene.plot.right(), false);
+  points = cut(cut(points, scene.plot.left, true), scene.plot.right(), false);
+  const auto [least, most] = std::minmax_element(points.begin(), points.end(), [](const Point& a, const Point& b) { return a.x < b.x; });
+  return points.empty() || most->x - least->x < 0.05 ? std::vector<Point>{} : points;
 }
 
 bool has_band(const plan::Direction& d, const Trace& trace) { return d.bandwidth_s > 0 && d.bandwidth_s <= 86400 && std::fabs(d.band_start_s) <= 1e7 && trace.times_s.size() >= 2; }

@@ -110,6 +110,9 @@ TEST_CASE("tables: what a spreadsheet would run is text, numbers stay numbers", 
   CHECK(csv_cell("-5.5") == "-5.5");
   CHECK(csv_cell("+3") == "+3");
   CHECK(csv_cell("-") == "-");
+  CHECK(csv_cell("-1 %") == "-1 %");
+  CHECK(csv_cell("-1 %%") == "'-1 %%");
+  CHECK(csv_cell("- %") == "- %");
   CHECK(csv_cell("-cmd|' /C calc'!A0") == "'-cmd|' /C calc'!A0");
   CHECK(csv_cell("@SUM(A1)") == "'@SUM(A1)");
   CHECK(csv_cell("  =1+1") == "'  =1+1");
