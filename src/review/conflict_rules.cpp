@@ -2,7 +2,6 @@
 
 #include <algorithm>
 #include <cmath>
-#include <set>
 
 #include "base/number_text.hpp"
 #include "review/paths.hpp"
@@ -11,167 +10,153 @@
 namespace entrain::review {
 namespace {
 
+using ListedPairs = std::map<std::pair<std::size_t, std::size_t>, std::pair<const plan::Conflict*, bool>>;
+
+// The plan's own list by pairs of groups; entries that name a group twice, or a pair twice, are findings.
+ListedPairs listed_pairs(const SignalView& view, Findings& findings) {
+  ListedPairs pairs;
+  for (const plan::Conflict& c : view.signal.conflicts) {
+    const auto a = view.group.find(c.a), b = view.group.find(c.b);
+    if (a == view.group.end() || b == view.group.end()) continue;
+    if (a == b) {
+      findings.violation("conflict-with-itself", fmt::format("the list of conflicts pairs group {} with itself", c.a), "Remove the entry", {c.a});
+      continue;
+    }
+    const bool swapped = b->second < a->second;
+    const auto key = std::minmax(a->second, b->second);
+    if (!pairs.emplace(key, std::make_pair(&c, swapped)).second)
+      findings.violation("conflict-listed-twice", fmt::format("groups {} and {} stand twice in the list of conflicts", c.a, c.b), "Keep the entry with the longer intergreens", {c.a, c.b});
+  }
+  return pairs;
+}
+
 // Why two groups conflict: the pair of movements or crossings, for people. Empty: they do not.
-std::string reason_of_conflict(const SignalView& view, const PathTable& paths, const plan::Group& a, const plan::Group& b, Findings* yields) {
-  for (const PathUse& x : uses_of(view, a))
-    for (const PathUse& y : uses_of(view, b)) {
+std::string reason_of_conflict(const PathTable& paths, const std::vector<PathUse>& a, const std::vector<PathUse>& b, bool& yield_refused) {
+  for (const PathUse& x : a)
+    for (const PathUse& y : b) {
       if (!paths.meet(x, y)) continue;
       const Yield first = paths.yield_of(x, y), second = paths.yield_of(y, x);
       if (first == Yield::allowed || second == Yield::allowed) continue;
-      if (yields != nullptr && (first == Yield::not_allowed || second == Yield::not_allowed))
-        yields->add("yield-not-allowed", Severity::warning, fmt::format("groups {} and {}: {} may not yield to {} by the plan's standard, so they count as conflicting", a.id, b.id, x.id, y.id));
-      return fmt::format("{} and {}", x.id, y.id);
+      yield_refused = first == Yield::not_allowed || second == Yield::not_allowed;
+      return fmt::format("{} and {}", paths.name(x), paths.name(y));
     }
   return {};
 }
 
-const plan::Conflict* listed(const plan::Signal& signal, const std::string& a, const std::string& b, bool& swapped) {
-  for (const plan::Conflict& c : signal.conflicts) {
-    swapped = c.a == b && c.b == a;
-    if (swapped || (c.a == a && c.b == b)) return &c;
+// What the lamps of a group show must be over before the other may start.
+int least_intergreen(const SignalView& view, std::size_t ending) { return walks(view.signal.groups[ending]) ? view.buffer() : view.after_green(ending); }
+
+// Tenths from a start to the end of what counts as occupied: green, or walk and clearance.
+int occupied(const SignalView& view, std::size_t group, const Span& span) { return span.length + (walks(view.signal.groups[group]) ? view.after_green(group) : 0); }
+
+// Intergreens of a pair in tenths: never below what the lamps need, the list's where it asks for more.
+std::pair<int, int> intergreens(const SignalView& view, const ConflictPair& pair) {
+  int ab = least_intergreen(view, pair.a), ba = least_intergreen(view, pair.b);
+  if (pair.listed != nullptr) {
+    ab = std::max(ab, to_tenths_up(pair.swapped ? pair.listed->intergreen_ba_s : pair.listed->intergreen_ab_s));
+    ba = std::max(ba, to_tenths_up(pair.swapped ? pair.listed->intergreen_ab_s : pair.listed->intergreen_ba_s));
   }
+  return {ab, ba};
+}
+
+// The first two greens of the pair that are not apart, or nothing.
+const Span* first_too_close(const SignalView& view, const ConflictPair& pair, const Span*& other) {
+  const auto [ab, ba] = intergreens(view, pair);
+  for (const Span& x : view.greens[pair.a])
+    for (const Span& y : view.greens[pair.b]) {
+      if (x.length == 0 || y.length == 0) continue;
+      const int gap_ab = modulo(y.start - x.start, view.cycle), gap_ba = modulo(x.start - y.start, view.cycle);
+      if (gap_ab > 0 && occupied(view, pair.a, x) + ab <= gap_ab && occupied(view, pair.b, y) + ba <= gap_ba) continue;
+      other = &y;
+      return &x;
+    }
   return nullptr;
 }
 
-// What the lamps of a group show must be over before the other may start.
-int least_intergreen(const SignalView& view, const plan::Group& ending) {
-  if (ending.kind == plan::GroupKind::pedestrian) return to_tenths(view.standard("pedestrian_buffer_s", 3));
-  return to_tenths(ending.yellow_s) + to_tenths(ending.red_clearance_s);
+void check_listed(const SignalView& view, const ConflictPair& pair, bool from_a, Findings& findings) {
+  const std::size_t ending = from_a ? pair.a : pair.b, starting = from_a ? pair.b : pair.a;
+  const plan::Group &e = view.signal.groups[ending], &s = view.signal.groups[starting];
+  const double seconds = from_a != pair.swapped ? pair.listed->intergreen_ab_s : pair.listed->intergreen_ba_s;
+  const std::string where = fmt::format("intergreen from {} to {}: {} s", e.id, s.id, number_text(seconds, 4));
+  if (!std::isfinite(seconds) || seconds < 0 || seconds > 60) return findings.violation("number-out-of-range", where, "Give seconds from 0 to 60", {e.id, s.id});
+  if (!is_on_tenth(seconds)) findings.violation("duration-not-in-tenths", where, "Controllers take tenths of a second", {e.id, s.id});
+  const int least = least_intergreen(view, ending);
+  if (to_tenths(seconds) < least)
+    findings.violation("intergreen-too-short", fmt::format("{}, {} needs {} s", where, walks(e) ? "the pedestrian buffer" : "its yellow and red clearance", seconds_of(least)), "Lengthen the intergreen, never the other way", {e.id, s.id});
 }
-
-// Tenths from a's start to the end of what counts as occupied: green, or walk and clearance.
-int occupied(const SignalView& view, std::size_t group, const Span& span) {
-  return span.length + (view.signal.groups[group].kind == plan::GroupKind::pedestrian ? view.after_green(group) : 0);
-}
-
-void check_pair_in_time(const SignalView& view, std::size_t a, std::size_t b, int intergreen_ab, int intergreen_ba, const std::string& why, Findings& findings) {
-  const auto name = [&](std::size_t g) { return view.signal.groups[g].id; };
-  for (const Span& x : view.greens[a])
-    for (const Span& y : view.greens[b]) {
-      if (x.length == 0 || y.length == 0) continue;
-      const int gap_ab = modulo(y.start - x.start, view.cycle), gap_ba = modulo(x.start - y.start, view.cycle);
-      const bool apart = gap_ab > 0 && occupied(view, a, x) + intergreen_ab <= gap_ab && occupied(view, b, y) + intergreen_ba <= gap_ba;
-      if (apart) continue;
-      findings.violation("intergreen-violated",
-                         fmt::format("groups {} and {} conflict ({}): {} ends at {} s, {} starts at {} s; {} ends at {} s, {} starts at {} s; intergreens {} s and {} s do not fit", name(a), name(b), why, name(a),
-                                     number_text(modulo(x.start + occupied(view, a, x), view.cycle) / 10.0), name(b), number_text(y.start / 10.0), name(b),
-                                     number_text(modulo(y.start + occupied(view, b, y), view.cycle) / 10.0), name(a), number_text(x.start / 10.0), number_text(intergreen_ab / 10.0), number_text(intergreen_ba / 10.0)),
-                         "Separate the two greens by their intergreens, both ways round the cycle");
-      return;
-    }
-}
-
-// The lamps themselves, tenth by tenth: the two groups may never both show something else than red.
-void look_at_lamps(const SignalView& view, std::size_t a, std::size_t b, Findings& findings) {
-  const auto lit = [&](std::size_t g) {
-    std::vector<char> row(static_cast<std::size_t>(view.cycle), 0);
-    for (const Span& span : view.greens[g]) {
-      const int length = span.length == 0 ? 0 : std::min(view.cycle, span.length + view.after_green(g));
-      for (int k = 0; k < length; ++k) row[static_cast<std::size_t>(modulo(span.start + k, view.cycle))] = 1;
-    }
-    return row;
-  };
-  const auto first = lit(a), second = lit(b);
-  int both = 0, from = -1;
-  for (int k = 0; k < view.cycle; ++k)
-    if (first[static_cast<std::size_t>(k)] && second[static_cast<std::size_t>(k)]) {
-      if (from < 0) from = k;
-      ++both;
-    }
-  if (both > 0)
-    findings.violation("conflicting-lamps", fmt::format("groups {} and {} conflict and both show something else than red for {} s, first at {} s", view.signal.groups[a].id, view.signal.groups[b].id, number_text(both / 10.0),
-                                                        number_text(from / 10.0)), "No two conflicting groups may be lit at once, clearances included");
-}
-
-struct PairCheck {
-  const SignalView& view;
-  Findings& findings;
-
-  void run(std::size_t a, std::size_t b, const std::string& derived, bool has_geometry) {
-    const plan::Group &x = view.signal.groups[a], &y = view.signal.groups[b];
-    bool swapped = false;
-    const plan::Conflict* entry = listed(view.signal, x.id, y.id, swapped);
-    if (derived.empty() && entry == nullptr) return;
-    const std::string why = derived.empty() ? "listed" : derived;
-    if (entry == nullptr && has_geometry)
-      findings.violation("conflict-not-listed", fmt::format("groups {} and {} conflict ({}), but are not in the plan's list of conflicts", x.id, y.id, derived), "Add the pair with its intergreens");
-    int ab = least_intergreen(view, x), ba = least_intergreen(view, y);
-    if (entry != nullptr) {
-      check_listed(x, y, swapped ? entry->intergreen_ba_s : entry->intergreen_ab_s, ab);
-      check_listed(y, x, swapped ? entry->intergreen_ab_s : entry->intergreen_ba_s, ba);
-      ab = std::max(ab, to_tenths(swapped ? entry->intergreen_ba_s : entry->intergreen_ab_s));
-      ba = std::max(ba, to_tenths(swapped ? entry->intergreen_ab_s : entry->intergreen_ba_s));
-    }
-    if (view.cycle == 0) return;
-    check_pair_in_time(view, a, b, ab, ba, why, findings);
-    look_at_lamps(view, a, b, findings);
-  }
-
-  void check_listed(const plan::Group& ending, const plan::Group& starting, double intergreen_s, int least) {
-    if (!std::isfinite(intergreen_s) || intergreen_s < 0 || intergreen_s > 60)
-      return findings.violation("number-out-of-range", fmt::format("intergreen from {} to {}: {} s", ending.id, starting.id, number_text(intergreen_s)), "Give seconds from 0 to 60");
-    if (to_tenths(intergreen_s) < least)
-      findings.violation("intergreen-too-short", fmt::format("intergreen from {} to {}: {} s, {} needs {} s", ending.id, starting.id, number_text(intergreen_s),
-                                                             ending.kind == plan::GroupKind::pedestrian ? "the pedestrian buffer" : "its yellow and red clearance", number_text(least / 10.0)), "Lengthen the intergreen");
-  }
-};
 
 }  // namespace
 
-int count_conflicts(const SignalView& view) {
-  if (!view.has_geometry) return static_cast<int>(view.signal.conflicts.size());
+void find_conflicts(SignalView& view, Findings& findings) {
+  const ListedPairs pairs = listed_pairs(view, findings);
+  if (!view.has_geometry) {
+    for (const auto& [key, entry] : pairs) view.conflicts.push_back({key.first, key.second, "listed", false, entry.first, entry.second});
+    return;
+  }
   const PathTable paths(view);
-  int count = 0;
-  for (std::size_t a = 0; a < view.signal.groups.size(); ++a)
-    for (std::size_t b = a + 1; b < view.signal.groups.size(); ++b) {
-      bool swapped = false;
-      count += !reason_of_conflict(view, paths, view.signal.groups[a], view.signal.groups[b], nullptr).empty() || listed(view.signal, view.signal.groups[a].id, view.signal.groups[b].id, swapped) != nullptr;
+  std::vector<std::vector<PathUse>> uses;
+  for (const plan::Group& g : view.signal.groups) uses.push_back(uses_of(view, g));
+  for (std::size_t a = 0; a < uses.size(); ++a)
+    for (std::size_t b = a + 1; b < uses.size(); ++b) {
+      bool refused = false;
+      const std::string why = reason_of_conflict(paths, uses[a], uses[b], refused);
+      const auto entry = pairs.find({a, b});
+      if (why.empty() && entry == pairs.end()) continue;
+      ConflictPair pair{a, b, why.empty() ? "listed" : why, !why.empty(), nullptr, false};
+      if (entry != pairs.end()) pair.listed = entry->second.first, pair.swapped = entry->second.second;
+      if (refused)
+        findings.add("yield-not-allowed", Severity::warning, fmt::format("groups {} and {}: the plan's standard does not allow the yield between {}, so they count as conflicting", view.signal.groups[a].id, view.signal.groups[b].id, why), {},
+                     {view.signal.groups[a].id, view.signal.groups[b].id});
+      view.conflicts.push_back(std::move(pair));
     }
-  return count;
 }
 
-void check_conflicts(const SignalView& view, Findings& findings) {
-  const PathTable paths(view);
-  for (std::size_t a = 0; a < view.signal.groups.size(); ++a)
-    for (std::size_t b = a + 1; b < view.signal.groups.size(); ++b) {
-      const std::string derived = view.has_geometry ? reason_of_conflict(view, paths, view.signal.groups[a], view.signal.groups[b], &findings) : std::string();
-      PairCheck{view, findings}.run(a, b, derived, view.has_geometry);
+void check_listed_conflicts(const SignalView& view, Findings& findings) {
+  for (const ConflictPair& pair : view.conflicts) {
+    const std::string &a = view.signal.groups[pair.a].id, &b = view.signal.groups[pair.b].id;
+    if (pair.listed == nullptr) {
+      findings.violation("conflict-not-listed", fmt::format("groups {} and {} conflict ({}), but are not in the plan's list of conflicts", a, b, pair.why), "Add the pair with its intergreens", {a, b});
+      continue;
     }
+    check_listed(view, pair, true, findings);
+    check_listed(view, pair, false, findings);
+  }
 }
 
-void check_trap(const SignalView& view, Findings& findings) {
-  if (view.cycle == 0 || !view.has_geometry) return;
-  const PathTable paths(view);
-  const auto green_at = [&](std::size_t g, int t) {
-    return std::any_of(view.greens[g].begin(), view.greens[g].end(), [&](const Span& s) { return modulo(t - s.start, view.cycle) < s.length; });
-  };
-  std::set<std::string> said;
-  for (std::size_t a = 0; a < view.signal.groups.size(); ++a)
-    for (const plan::Served& turn : view.signal.groups[a].serves) {
-      if (turn.right_of_way != plan::RightOfWay::permissive || turn.flashing_yellow_arrow) continue;
-      const PathUse x{turn.movement, false, true};
-      for (const Span& green : view.greens[a]) {
-        if (green.length == 0 || green.length == view.cycle) continue;
-        const int end = modulo(green.start + green.length, view.cycle);
-        for (std::size_t b = 0; b < view.signal.groups.size(); ++b)
-          for (const plan::Served& through : view.signal.groups[b].serves) {
-            const bool opposed = paths.is_opposed_turn(x, {through.movement, false, false}) && paths.is_through(through.movement);
-            if (b == a || !opposed || !green_at(b, end)) continue;
-            bool arrow = false;  // the turn's own arrow, without a gap
-            for (std::size_t k = 0; k < view.signal.groups.size(); ++k)
-              for (const plan::Served& own : view.signal.groups[k].serves)
-                arrow = arrow || (k != a && own.movement == turn.movement && own.right_of_way == plan::RightOfWay::with_protection && green_at(k, end));
-            // The same turn may go on yielding under another group's circular green.
-            bool goes_on = false;
-            for (std::size_t k = 0; k < view.signal.groups.size(); ++k)
-              for (const plan::Served& own : view.signal.groups[k].serves) goes_on = goes_on || (k != a && own.movement == turn.movement && own.right_of_way == plan::RightOfWay::permissive && green_at(k, end));
-            if (arrow || goes_on || !said.insert(turn.movement + "<" + through.movement).second) continue;
-            findings.violation("opposed-turn-trap", fmt::format("{} yields to {} under group {}, whose green ends at {} s while group {} stays green", turn.movement, through.movement, view.signal.groups[a].id,
-                                                                number_text(end / 10.0), view.signal.groups[b].id),
-                               "End both greens together, let the turn's own arrow follow without a gap, protect the turn, or display a flashing yellow arrow");
-          }
-      }
-    }
+void check_intergreens(const SignalView& view, Findings& findings) {
+  if (!view.is_usable) return;
+  for (const ConflictPair& pair : view.conflicts) {
+    const Span* y = nullptr;
+    const Span* x = first_too_close(view, pair, y);
+    if (x == nullptr) continue;
+    const std::string &a = view.signal.groups[pair.a].id, &b = view.signal.groups[pair.b].id;
+    const auto [ab, ba] = intergreens(view, pair);
+    const auto part = [&](const std::string& id, std::size_t g, const Span& span) {
+      return fmt::format("{} runs from {} s to {} s", id, seconds_of(span.start), seconds_of(modulo(span.start + occupied(view, g, span), view.cycle)));
+    };
+    findings.violation("intergreen-violated", fmt::format("groups {} and {} conflict ({}): {}, {}; intergreens of {} s and {} s do not fit in a cycle of {} s", a, b, pair.why, part(a, pair.a, *x), part(b, pair.b, *y), seconds_of(ab),
+                                                          seconds_of(ba), seconds_of(view.cycle)),
+                       "Separate the two greens by their intergreens, both ways round the cycle", {a, b});
+  }
+}
+
+// The lamps themselves, tenth by tenth: two conflicting groups may never both show something else than red.
+void check_lamps(const SignalView& view, Findings& findings) {
+  if (!view.is_usable) return;
+  for (const ConflictPair& pair : view.conflicts) {
+    const std::vector<int> both = view.lit_rows[pair.a].common(view.lit_rows[pair.b]);
+    if (both.empty()) continue;
+    const std::string &a = view.signal.groups[pair.a].id, &b = view.signal.groups[pair.b].id;
+    findings.violation("conflicting-lamps", fmt::format("groups {} and {} conflict ({}) and both show something else than red for {} s, first at {} s", a, b, pair.why, seconds_of(static_cast<int>(both.size())), seconds_of(both.front())),
+                       "No two conflicting groups may be lit at once, clearances and pedestrian buffer included", {a, b});
+  }
+}
+
+int count_green_pairs(const SignalView& view) {
+  if (!view.is_usable) return 0;
+  std::size_t count = 0;
+  for (const ConflictPair& pair : view.conflicts) count += view.greens[pair.a].size() * view.greens[pair.b].size();
+  return static_cast<int>(count);
 }
 
 }  // namespace entrain::review

@@ -9,7 +9,7 @@
 namespace entrain::review {
 
 std::string to_text(const Review& review, const std::string& name);
-// One object: "safety", "why", "violations", "findings", "bands", "unchecked".
+// One object: "safety", "why", "violations", "warnings", "findings", "bands", "signals", "unchecked". Text that is no UTF-8 is replaced.
 std::string to_json(const Review& review, const std::string& name);
 
 const char* word(Safety safety);
