@@ -88,11 +88,19 @@ class Times {
     return found != all.end() && m_input.signal.legs[static_cast<std::size_t>(found->leg)].id == name;
   }
 
-  // Approach speed of a served movement: the leg's speed limit with the standard's margin, a turn's from a separate lane below it.
-  double speed_mps(const Served& served, bool arrow) const {
+  // The leg's speed limit with the standard's margin; a turn's from a separate lane below it.
+  double travelled_mps(const Served& served, bool arrow) const {
     const double limit = approach_leg(served.movement).speed_limit_mps;
-    const double margin = arrow ? value_or(m_input.standard, "turn_speed_margin_mps", 0) : value_or(m_input.standard, "through_speed_margin_mps", 0);
-    return std::max(limit + margin, value_or(m_input.standard, "least_approach_speed_mps", 25 * mps_per_mph));
+    return limit + (arrow ? value_or(m_input.standard, "turn_speed_margin_mps", 0) : value_or(m_input.standard, "through_speed_margin_mps", 0));
+  }
+  // Approach speed for yellow: never below the standard's least. Red clearance takes the slower of the two, since slow vehicles clear late.
+  double speed_mps(const Served& served, bool arrow) const {
+    return std::max(travelled_mps(served, arrow), value_or(m_input.standard, "least_approach_speed_mps", 25 * mps_per_mph));
+  }
+  double clearing_mps(const Served& served, bool arrow) const {
+    constexpr double slowest_mps = 3;
+    const double travelled = std::min(travelled_mps(served, arrow), speed_mps(served, arrow));
+    return std::max(slowest_mps, arrow ? std::min(travelled, value_or(m_input.standard, "turn_clearing_speed_mps", travelled)) : travelled);
   }
 
   void set_vehicle(Group& group) {
@@ -101,7 +109,7 @@ class Times {
     for (const Served& served : group.serves) {
       const network::Leg& leg = approach_leg(served.movement);
       const double speed = speed_mps(served, arrow), width = clearing_width_m(m_input.signal, movement(served.movement));
-      const double clearing = arrow ? std::min(speed, value_or(m_input.standard, "turn_clearing_speed_mps", speed)) : speed;
+      const double clearing = clearing_mps(served, arrow);
       const standards::ChangeInterval times = standards::change_interval(m_input.standard, speed, clearing, leg.grade_in, width);
       if (times.yellow > group.yellow) group.yellow = times.yellow, basis.speed_mps = speed, basis.grade = std::clamp(leg.grade_in, -0.25, 0.25);
       if (times.red_clearance > group.red_clearance) group.red_clearance = times.red_clearance, basis.width_m = width, basis.clearing_speed_mps = clearing;

@@ -338,3 +338,19 @@ TEST_CASE("bad intersections are errors", "[timing]") {
     CHECK(has(errors_of(signal, bad, request), "one group for movements that share lanes"));
   }
 }
+
+TEST_CASE("a lower speed limit never shortens red clearance, below the least approach speed either", "[timing]") {
+  auto signal = sample::four_legs();
+  const auto demand = sample::demand_of(signal, true);
+  std::map<std::string, Tenths> before;
+  for (const double limit_mps : {24.0, 17.9, 13.4, 11.2, 8.9, 6.7, 4.5}) {
+    CAPTURE(limit_mps);
+    for (auto& leg : signal.legs) leg.speed_limit_mps = limit_mps;
+    for (const Group& g : designed(signal, demand).groups) {
+      if (g.kind != GroupKind::vehicle) continue;
+      CAPTURE(g.id);
+      if (before.count(g.id) != 0) CHECK(g.red_clearance >= before.at(g.id));
+      before[g.id] = g.red_clearance;
+    }
+  }
+}
